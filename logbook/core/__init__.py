@@ -1,0 +1,1 @@
+"""Pieces that know no feature."""

@@ -1,0 +1,1 @@
+"""Pages and commands that look across rooms."""

@@ -1,0 +1,1 @@
+"""One module a kind of measurement, found by walking this folder."""
