@@ -37,6 +37,11 @@ INSTALLED_APPS = [
     "template_partials",
     "logbook.core",
     "logbook.people",
+    "logbook.engines",
+    "logbook.gauges",
+    "logbook.work",
+    "logbook.bench",
+    "logbook.review",
     "logbook.desk",
 ]
 MIDDLEWARE = [

@@ -2,7 +2,8 @@
 
 from django.urls import include, path
 
-urlpatterns = [path("", include("logbook.desk.urls"))]
+ROOMS = ("people", "engines", "gauges", "work", "bench", "review", "desk")
+urlpatterns = [path("", include(f"logbook.{room}.urls")) for room in ROOMS]
 
 handler400 = "logbook.core.errors.not_understood"
 handler403 = "logbook.core.errors.not_allowed"

@@ -110,7 +110,7 @@ def judge_measurement(
     derived = []
     for one in measurement.kind.derive(done):
         if isinstance(one, Derived):
-            finding, more = derived_finding(one, done, document)
+            finding, more = derived_finding(one, measurement.kind, done, document)
             derived.append(finding)
             warnings += more
         else:

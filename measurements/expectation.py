@@ -54,10 +54,14 @@ class Expectation:
 
     @cached_property
     def zone(self) -> Zone | None:
-        """The span of healthy readings; None where nothing is known."""
+        """The span of healthy readings; None where nothing is known, or no engine could have it so narrow or wide."""
+        zone = self._span()
+        return zone if zone and 1e-100 < zone.width < 1e100 else None
+
+    def _span(self) -> Zone | None:
         lower, upper, nominal = self.lower, self.upper, self.nominal
         if lower is not None and upper is not None:
-            return Zone(lower, upper, upper - lower, upper - lower) if lower < upper else None
+            return Zone(lower, upper, upper - lower, upper - lower)
         if lower is not None:
             return _one_sided(lower, nominal, 1)
         if upper is not None:

@@ -31,7 +31,7 @@ from measurements.gauge import (
 from measurements.intake.document import Document
 from measurements.intake.measurement import Measurement
 from measurements.intake.shop import Shop
-from measurements.kind import Derived, Measured, Pass
+from measurements.kind import Derived, Kind, Measured, Pass
 from measurements.limits import Limit, limit_for
 from measurements.sentence import Sentence, say
 from measurements.slip import Slip
@@ -230,9 +230,9 @@ def chance_in_words(p: float) -> str:
     return "under 0.001" if p < 0.001 else "over 0.999" if p > 0.999 else f"{p:.3f}"
 
 
-def derived_finding(derived: Derived, done: Pass, document: Document) -> tuple[Finding, list[Sentence]]:
+def derived_finding(derived: Derived, kind: Kind, done: Pass, document: Document) -> tuple[Finding, list[Sentence]]:
     """Judge a derived value: its uncertainty is propagated, errors shared between its readings kept together."""
-    unit = find_unit(derived.unit)
+    unit = find_unit(derived.unit, kind.characteristic(derived.characteristic).dimension)
     lines = propagated(derived.sensitivities)
     budget = Budget(lines)
     zone, limit, notes, warning = zone_of(

@@ -71,7 +71,7 @@ def test_every_room_is_named_in_the_contract_about_its_inside():
     assert set(inside["containers"]) == rooms
 
 
-@pytest.mark.parametrize("path", PYTHON, ids=short)
+@pytest.mark.parametrize("path", [path for path in PYTHON if path.parent.name != "migrations"], ids=short)
 def test_a_file_is_a_room_with_one_purpose(path):
     assert len(path.read_text(encoding="utf-8").splitlines()) <= LONGEST
 

@@ -112,9 +112,7 @@ SENTENCES = [
 ]
 
 
-@pytest.mark.parametrize(
-    ("text", "field", "sentence"), SENTENCES, ids=lambda given: str(given)[:20].encode("unicode_escape")
-)
+@pytest.mark.parametrize(("text", "field", "sentence"), SENTENCES, ids=lambda given: f"{str(given)[:20]!a}")
 def test_refusal_says_what_was_read_and_what_would_be_right(text, field, sentence):
     with pytest.raises(Refusal) as refused:
         read_entry(text, field)

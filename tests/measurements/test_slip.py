@@ -231,7 +231,7 @@ def test_intake_and_exhaust_read_the_wrong_way_round_are_found():
     assert found >= 950
 
 
-known = st.none() | st.floats(allow_nan=False, allow_infinity=False, min_value=-1e12, max_value=1e12)
+known = st.none() | st.floats(allow_nan=False, allow_infinity=False)
 
 
 @given(

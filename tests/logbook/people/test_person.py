@@ -2,16 +2,18 @@
 
 import pytest
 from django.contrib.auth import authenticate, get_user_model
+from django.contrib.auth.models import AnonymousUser
 from django.core.exceptions import ValidationError
 from django.db import IntegrityError, transaction
 
-from logbook.people.models import Person
+from logbook.people.models import Person, Shop
+from tests.factories import make_shop
 
 pytestmark = pytest.mark.django_db
 
 
 def person(name="Night shift 3", password="a feeler of 0.18"):
-    somebody = Person(name=name)
+    somebody = Person(shop=Shop.objects.first() or make_shop(), name=name, is_technician=True)
     somebody.set_password(password)
     somebody.full_clean()
     somebody.save()
@@ -46,9 +48,24 @@ def test_a_name_is_given_once(name):
         person(name=name)
     assert "Somebody with this name is here already; add an initial or a number." in refused.value.messages
     with pytest.raises(IntegrityError), transaction.atomic():
-        Person.objects.create(name=name)
+        Person.objects.create(shop=Shop.objects.first(), name=name, is_technician=True)
 
 
 def test_a_person_without_a_name_is_refused_by_the_database_too():
     with pytest.raises(IntegrityError, match="person_has_a_name"), transaction.atomic():
-        Person.objects.create(name="")
+        Person.objects.create(shop=make_shop(), name="", is_technician=True)
+
+
+def test_a_person_has_at_least_one_role():
+    with pytest.raises(ValidationError) as refused:
+        Person(shop=make_shop(), name="Nobody's helper", password="!").full_clean()
+    assert "Tick at least one role: it says what this person may do." in refused.value.messages
+
+
+def test_rows_are_seen_by_their_own_shop_only():
+    ours, theirs = make_shop(), make_shop("Other works")
+    here = Person.objects.create(shop=ours, name="Here", is_technician=True)
+    Person.objects.create(shop=theirs, name="There", is_technician=True)
+
+    assert list(Person.objects.seen_by(here)) == [here]
+    assert list(Person.objects.seen_by(AnonymousUser())) == []

@@ -1,0 +1,4 @@
+"""The room's addresses."""
+
+app_name = "engines"
+urlpatterns = []
