@@ -2,6 +2,7 @@
 
 from collections.abc import Mapping, Sequence
 
+from measurements.conformity import over
 from measurements.engine import Engine
 from measurements.finding import Finding, tidy
 from measurements.screw import turn_for
@@ -9,31 +10,40 @@ from measurements.sentence import Sentence, say
 from measurements.units import convert, find_unit
 
 
-def setting_gap(finding: Finding) -> float | None:
-    """How far a value has to move to its target, in its unit; None inside the setting zone or without one."""
+def setting_gap(finding: Finding) -> tuple[float | None, Sentence | None]:
+    """How far a value has to move to its target, in its unit; or why that can't be told. Neither inside the setting zone."""
     limit = finding.limit
-    if limit is None or not limit.has_setting_zone or finding.zone.is_open or finding.value is None:
-        return None
-    low, high = limit.figure("set_lower", finding.unit), limit.figure("set_upper", finding.unit)
-    inside = (low is None or finding.value >= low) and (high is None or finding.value <= high)
-    if inside and finding.bound is None or limit.target is None:
-        return None
-    return convert(limit.target, limit.unit, finding.unit) - finding.value
+    if limit is None or not limit.has_setting_zone or not outside_setting_zone(finding):
+        return None, None
+    if limit.target is None:
+        return None, say("No act for {station}: it is outside its setting zone, but no nominal says where to set it.",
+                         station=finding.station)  # fmt: skip
+    return convert(limit.target, limit.unit, finding.unit) - finding.value, None
+
+
+def outside_setting_zone(finding: Finding) -> bool:
+    """Tell whether a value is outside its setting zone; a censored one has to prove it."""
+    low, high = finding.limit.setting_ends(finding.unit)
+    under = low is not None and (
+        over(low, finding.value) or (finding.bound == "below" and not over(finding.value, low))
+    )
+    above = high is not None and (
+        over(finding.value, high) or (finding.bound == "above" and not over(high, finding.value))
+    )
+    proves = {None: under or above, "below": under, "above": above}
+    return proves[finding.bound]
 
 
 def screw_advice(finding: Finding, engine: Engine) -> tuple[dict[str, object] | None, Sentence | None]:
     """Turn of the lash screw that brings a station to its target; or a warning why there is none."""
-    gap = setting_gap(finding)
+    if finding.bound and finding.limit and finding.limit.has_setting_zone:
+        return (reopen(finding) if outside_setting_zone(finding) else None), None
+    gap, why_not = setting_gap(finding)
     if gap is None:
-        return None, None
-    if finding.bound:
-        return reopen(finding), None
-    if engine.adjustment is None:
-        return None, say("No act for {station}: how the lash is adjusted is not given.", station=finding.station)
-    if engine.adjustment != "screw":
-        return None, None
-    if engine.screw_pitch is None:
-        return None, say("No turn for {station}: the screw pitch is not given.", station=finding.station)
+        return None, why_not
+    why_not = no_turn(finding.station, engine)
+    if why_not or engine.adjustment != "screw":
+        return None, why_not
     mm = find_unit("mm")
     turn = turn_for(
         convert(gap, finding.unit, mm), engine.screw_pitch, engine.screw_ratio, engine.thread, engine.inward_closes
@@ -44,6 +54,23 @@ def screw_advice(finding: Finding, engine: Engine) -> tuple[dict[str, object] | 
         "direction": turn.direction, "hand": turn.hand, "predicted": tidy(predicted), "unit": finding.unit.symbol,
         "confirm_first": confirm_first(finding), "working": [str(step) for step in turn.working],
     }, None  # fmt: skip
+
+
+def no_turn(station: str, engine: Engine) -> Sentence | None:
+    """Say why no turn can be computed; what is not given of the screw is not assumed."""
+    if engine.adjustment is None:
+        return say("No act for {station}: how the lash is adjusted is not given.", station=station)
+    if engine.adjustment != "screw":
+        return None
+    if station.endswith(".bridge"):
+        return say("No turn for {station}: a bridge has its own screw. Balance it, then measure the lash again.",
+                   station=station)  # fmt: skip
+    if engine.screw_pitch is None:
+        return say("No turn for {station}: the screw pitch is not given.", station=station)
+    if engine.screw_ratio is None:
+        return say("No turn for {station}: the screw ratio is not given, how far the valve moves for each movement of the "
+                   "screw (1 where the screw stands over the valve).", station=station)  # fmt: skip
+    return None
 
 
 def reopen(finding: Finding) -> dict[str, object]:
@@ -65,7 +92,7 @@ def confirm_first(finding: Finding) -> str | None:
     """A reading that looks like a slip is confirmed before anything is turned."""
     if finding.slip is None:
         return None
-    return str(say("Confirm the reading first: it would make sense {slip}.", slip=str(finding.slip.reason)))
+    return str(say("Confirm the reading first: it would make sense if {slip}.", slip=str(finding.slip.reason)))
 
 
 def advise(latest: Mapping[str, Finding], acts: Sequence[str], engine: Engine) -> tuple[list[dict], list[Sentence]]:

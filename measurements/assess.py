@@ -2,21 +2,21 @@
 
 from collections.abc import Mapping, Sequence
 from dataclasses import replace
-from statistics import median
 
 from measurements.advice import advise
 from measurements.barring import plan
 from measurements.document import Node, Unjudgeable, load
+from measurements.doubt import beside, slip_of
 from measurements.engine import Engine
 from measurements.finding import Finding, plain
 from measurements.intake.document import Document, read_document
 from measurements.intake.measurement import Measurement
 from measurements.judging import STANDARD_BAROMETER, derived_finding, judged, take, unlimited_finding
-from measurements.kind import Derived, Kind, Measured, Pass, find_kinds
+from measurements.kind import Derived, Kind, Pass, find_kinds
 from measurements.limits import AS_LEFT, limit_for
 from measurements.sentence import Sentence, say
-from measurements.slip import Expectation, Slip, find_slip
-from measurements.units import Unit, convert
+
+__all__ = ["assess", "assess_bytes", "beside"]
 
 
 def assess(document: object, kinds: Mapping[str, Kind] | None = None) -> dict[str, object]:
@@ -50,7 +50,7 @@ def judge_document(document: Document) -> dict[str, object]:
         passes.append(done)
         told[measurement.place] = (findings, derived)
         warnings += more
-    warnings += backward_meter(document.measurements)
+    warnings += [*untold_order(document.measurements), *backward_meter(document.measurements)]
     advice, more = all_advice(document, told)
     barring, unplanned = barring_plan(document.engine)
     return {
@@ -66,19 +66,32 @@ def judge_document(document: Document) -> dict[str, object]:
 
 
 def in_time_order(measurements: Sequence[Measurement]) -> list[Measurement]:
-    """Measurements by running hours where all have them, else by day; those that say neither keep their place.
+    """Measurements by day where all have one, else by running hours; those that say neither keep their place.
 
-    Within a visit found comes before left, and dry before wet, in whichever order they were written down.
+    The day goes first because a meter can be replaced. Within a visit found comes before left, and dry before wet, in
+    whichever order they were written down.
     """
 
     def within_visit(one: Measurement) -> tuple[bool, bool, int]:
         return one.phase == AS_LEFT, bool(one.conditions.get("wet")), one.place
 
-    if all(one.hours is not None for one in measurements):
-        return sorted(measurements, key=lambda one: (one.hours, str(one.taken_on or ""), *within_visit(one)))
     if all(one.taken_on is not None for one in measurements):
-        return sorted(measurements, key=lambda one: (one.taken_on, *within_visit(one)))
+        metered = all(one.hours is not None for one in measurements)
+        return sorted(measurements, key=lambda one: (one.taken_on, one.hours if metered else 0, *within_visit(one)))
+    if all(one.hours is not None for one in measurements):
+        return sorted(measurements, key=lambda one: (one.hours, *within_visit(one)))
     return list(measurements)
+
+
+def untold_order(measurements: Sequence[Measurement]) -> list[Sentence]:
+    """Say so where the order in time of two measurements of a kind isn't told by all days or all hours."""
+    kinds = [one.kind.name for one in measurements]
+    told = any(all(getattr(one, name) is not None for one in measurements) for name in ("taken_on", "hours"))
+    if told or len(set(kinds)) == len(kinds):
+        return []
+    return [
+        say("Not every measurement has its day, nor every one its running hours: they are taken in the order written.")
+    ]
 
 
 def judge_measurement(
@@ -86,9 +99,10 @@ def judge_measurement(
 ) -> tuple[Pass, list[Finding], list[Finding], list[Sentence]]:
     """Judge one measurement: its pass, its findings, its derived values, its warnings."""
     done = open_pass(measurement, document, before)
-    measured, told, warnings, findings = {}, {}, [], []
+    measured, told, warnings, findings, own = {}, {}, [], [], {}
     for station in measurement.entries:
-        value, notes, working = take(measurement, station, done, document.shop)
+        at_limits = at_barometer_of_limit(done, station, measurement, document)
+        value, notes, working = take(measurement, station, at_limits)
         if value is None:
             warnings += [
                 say(
@@ -96,9 +110,10 @@ def judge_measurement(
                 )
             ]
             continue
-        measured[station], told[station] = value, (notes, working)
+        own[station], told[station] = value, (notes, working)
+        measured[station] = value if at_limits is done else take(measurement, station, done)[0]
     done = replace(done, measured=measured)
-    for station, value in measured.items():
+    for station, value in own.items():
         notes, working = told[station]
         slip = slip_of(value, measurement, done, document)
         finding, more = judged(value, measurement, done, document, list(notes), list(working), slip)
@@ -122,55 +137,38 @@ def open_pass(measurement: Measurement, document: Document, before: Sequence[Pas
     """Start the pass of a measurement, with what came before it of the same kind."""
     same = [one for one in before if one.kind == measurement.kind.name]
     conditions = dict(measurement.conditions)
-    conditions["reference_barometer"] = reference_barometer(measurement, document)
+    conditions["reference_barometers"] = {
+        one.name: reference_barometer(one.name, None, measurement, document)
+        for one in (*measurement.kind.entered, *measurement.kind.derived)
+        if one.dimension == "pressure"
+    }
+    entered = measurement.kind.entered[0].name
+    conditions["reference_barometer"] = conditions["reference_barometers"].get(entered, STANDARD_BAROMETER)
+    if measurement.gauge and measurement.gauge.resolution is not None:
+        conditions["gauge_resolution"] = measurement.gauge.resolution
     return Pass(
         measurement.place, measurement.kind.name, measurement.phase, document.engine, conditions, measurement.typed_units, {},
         measurement.taken_on, measurement.hours, measurement.gauge.name if measurement.gauge else None, earlier=same,
     )  # fmt: skip
 
 
-def reference_barometer(measurement: Measurement, document: Document) -> float:
-    """Barometer [Pa] that the limit of this measurement's pressures is stated for."""
+def reference_barometer(
+    characteristic: str, station: str | None, measurement: Measurement, document: Document
+) -> float:
+    """Barometer [Pa] that the limit of a characteristic is stated for."""
     state, temperature = measurement.conditions.get("state"), measurement.conditions.get("part_temperature")
-    for characteristic in measurement.kind.entered:
-        limit, _ = limit_for(document.limits, characteristic.name, None, state, temperature)
-        if limit and limit.reference_barometer:
-            return limit.reference_barometer
-    return STANDARD_BAROMETER
+    limit, _ = limit_for(document.limits, characteristic, station, state, temperature)
+    return limit.reference_barometer if limit and limit.reference_barometer else STANDARD_BAROMETER
 
 
-def slip_of(value: Measured, measurement: Measurement, done: Pass, document: Document) -> Slip | None:
-    """Ask whether a reading would make sense otherwise: another unit, the point moved, the neighbour's station."""
-    if value.bound or measurement.kind.unlimited(done):
-        return None
-    entry = measurement.entries[value.station][1]
-    own = expectation(value.characteristic, value.station, value.unit, done, document)
-    neighbours = {
-        station: expectation(other.characteristic, station, value.unit, done, document)
-        for station, other in done.measured.items()
-        if station != value.station and beside(station, value.station) and other.unit.dimension == value.unit.dimension
-    }
-    return find_slip(value.value, value.unit, own, unit_typed=entry.unit_typed, neighbours=neighbours)
-
-
-def beside(one: str, other: str) -> bool:
-    """Tell whether two stations could be mistaken for each other: the same cylinder's, or the same place's next door."""
-    first, second = one.split("."), other.split(".")
-    return first[0] == second[0] or (first[1:] == second[1:] and abs(int(first[0]) - int(second[0])) == 1)
-
-
-def expectation(characteristic: str, station: str, unit: Unit, done: Pass, document: Document) -> Expectation:
-    """What a station's reading should look like: its limits, nominal, last visit, and the rest of this pass."""
-    limit, _ = limit_for(document.limits, characteristic, station, done.conditions.get("state"),
-                         done.conditions.get("part_temperature"))  # fmt: skip
-    figures = {name: limit.figure(name, unit) if limit else None for name in ("lower", "upper", "nominal")}
-    last = next((one.measured[station] for one in reversed(done.earlier) if station in one.comparable()), None)
-    siblings = [convert(one.value, one.unit, unit) for name, one in done.comparable().items()
-                if name != station and one.characteristic == characteristic]  # fmt: skip
-    return Expectation(
-        **figures, last=convert(last.value, last.unit, unit) if last and last.unit.dimension == unit.dimension else None,
-        siblings=median(siblings) if len(siblings) > 1 else None,
-    )  # fmt: skip
+def at_barometer_of_limit(done: Pass, station: str, measurement: Measurement, document: Document) -> Pass:
+    """The pass as one station's own limit wants it: at that limit's reference barometer, where it has another."""
+    if not any(limit.reference_barometer for limit in document.limits):
+        return done
+    reference = reference_barometer(measurement.entries[station][0], station, measurement, document)
+    if reference == done.conditions["reference_barometer"]:
+        return done
+    return replace(done, conditions={**done.conditions, "reference_barometer": reference})
 
 
 def all_advice(
@@ -184,7 +182,7 @@ def all_advice(
         if measurement.kind.acts:
             acts[measurement.kind.name] = measurement.kind.acts
             latest = by_kind.setdefault(measurement.kind.name, {})
-            latest.update({one.station: one for one in told[measurement.place][0]})
+            latest.update({one.station: one for one in told[measurement.place][0] if one.value is not None})
     for name, latest in by_kind.items():
         some, more = advise(latest, acts[name], document.engine)
         advice += some

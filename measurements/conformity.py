@@ -109,7 +109,7 @@ def judge(value: float, *, u: float, zone: Zone, dof: float = inf, bound: str | 
     if zone.is_open:
         return Judgement(NO_LIMIT)
     w = guard_band(zone.rule, u=u, dof=dof)
-    vanished = None not in (zone.lower, zone.upper) and not _over(zone.upper - zone.lower, 2 * w) and w > 0
+    vanished = w > 0 and _vanishes(zone, u, dof)
     if bound:
         return Judgement(_censored_verdict(value, w, zone, bound), guard_band=w, vanished=vanished)
     p = chance_within(value, u=u, lower=zone.lower, upper=zone.upper, dof=dof)
@@ -152,27 +152,45 @@ def zone_uncertainty(zone: Zone) -> float | None:
     """Expanded uncertainty U (k = 2) under which a two-sided zone can accept any reading at all; None when it always can."""
     if None in (zone.lower, zone.upper) or zone.rule == SIMPLE:
         return None
-    return (zone.upper - zone.lower) / guard_band(zone.rule, u=1.0)  # 2 w < zone, w = factor · U / 2
+    return 2 * (zone.upper - zone.lower) / _narrowest(zone.rule)
+
+
+def _narrowest(rule: str, dof: float = inf) -> float:
+    """Width of a two-sided zone, in units of u, under which no reading can be proven within.
+
+    `guarded` asks for 95 % between both limits, which in the middle of the zone takes the two-sided quantile.
+    """
+    if rule == GUARDED:
+        return 2 * student_quantile((1 + GUARDED_CONFIDENCE) / 2, dof)
+    return 2 * guard_band(rule, u=1.0, dof=dof)
+
+
+def _vanishes(zone: Zone, u: float, dof: float) -> bool:
+    if None in (zone.lower, zone.upper):
+        return False
+    return not over(zone.upper - zone.lower, _narrowest(zone.rule, dof) * u)
 
 
 def _verdict(value: float, w: float, zone: Zone, p: float, vanished: bool) -> str:
     low, high = _ends(zone)
-    accepted = not _over(low + w, value) and not _over(value, high - w)
-    if accepted and not vanished and (zone.rule != GUARDED or p >= GUARDED_CONFIDENCE):
+    accepted = not over(low + w, value) and not over(value, high - w)
+    # at a single limit the guard band is the 95 %; asking again would let binary noise flip its edge
+    proven = zone.rule != GUARDED or None in (zone.lower, zone.upper) or p >= GUARDED_CONFIDENCE
+    if accepted and not vanished and proven:
         return WITHIN
-    return BEYOND if _over(low - w, value) or _over(value, high + w) else TOO_CLOSE
+    return BEYOND if over(low - w, value) or over(value, high + w) else TOO_CLOSE
 
 
 def _censored_verdict(value: float, w: float, zone: Zone, bound: str) -> str:
     """A true value under `value` is proven beyond a lower limit, or within an upper one; likewise above."""
     low, high = _ends(zone)
     if bound == "below":
-        if not _over(value, low - w):
+        if not over(value, low - w):
             return BEYOND
-        return WITHIN if zone.lower is None and not _over(value, high - w) else TOO_CLOSE
-    if not _over(high + w, value):
+        return WITHIN if zone.lower is None and not over(value, high - w) else TOO_CLOSE
+    if not over(high + w, value):
         return BEYOND
-    return WITHIN if zone.upper is None and not _over(low + w, value) else TOO_CLOSE
+    return WITHIN if zone.upper is None and not over(low + w, value) else TOO_CLOSE
 
 
 def _ends(zone: Zone) -> tuple[float, float]:
@@ -184,6 +202,6 @@ def _margin(value: float, expanded: float, zone: Zone) -> float | None:
     return min(value - low, high - value) / expanded if expanded else None
 
 
-def _over(a: float, b: float) -> bool:
+def over(a: float, b: float) -> bool:
     """Tell whether a > b once both are rounded to 12 significant digits, so that a change of unit can't flip an edge."""
     return float(f"{a:.12g}") > float(f"{b:.12g}")

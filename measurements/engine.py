@@ -72,7 +72,7 @@ class Engine:
     exhaust_valves: int = 1
     adjustment: Literal["screw", "shim", "hydraulic"] | None = None
     screw_pitch: float | None = None
-    screw_ratio: float = 1.0
+    screw_ratio: float | None = None
     shim_ratio: float = 1.0
     thread: Literal["right", "left"] = "right"
     inward_closes: bool = True

@@ -11,7 +11,6 @@ from measurements.entry import Reading
 from measurements.sentence import Sentence, say
 
 FEWEST_OWN_REPEATS = 4  # an s from fewer gives way to the gauge's pooled s
-NOTED_SHARE, UNSUITABLE_SHARE = 1 / 8, 1 / 3  # of the tolerance zone, by the gauge's U
 
 
 @dataclass(frozen=True)
@@ -219,12 +218,9 @@ def resolution_line(readings: Sequence[Reading], gauge: Gauge | None, scale: flo
     return Line(f"resolution {step:g}", "rectangular", display_step(step)) if step else None
 
 
-def repeatability_line(values: Sequence[float], gauge: Gauge | None, scale: float, n: int | None = None) -> Line | None:
-    """Line for the mean of repeats: own s from four repeats on, else the gauge's pooled s, else the few there are.
-
-    `n` asks what the line would be with that many repeats of the same scatter.
-    """
-    count = n or len(values)
+def repeatability_line(values: Sequence[float], gauge: Gauge | None, scale: float) -> Line | None:
+    """Line for the mean of repeats: own s from four repeats on, else the gauge's pooled s, else the few there are."""
+    count = len(values)
     if len(values) < FEWEST_OWN_REPEATS and gauge and gauge.repeatability is not None:
         pooled = gauge.repeatability / scale
         return Line("repeatability, pooled", f"normal, n = {count}", pooled / sqrt(count), gauge.repeatability_dof)
@@ -233,64 +229,38 @@ def repeatability_line(values: Sequence[float], gauge: Gauge | None, scale: floa
     return Line("repeatability", f"normal, n = {count}", stdev(values) / sqrt(count), count - 1)
 
 
-def reading_budget(readings: Sequence[Reading], gauge: Gauge | None, repeats: int | None = None) -> Budget:
-    """Uncertainty budget of the mean of repeats, in their unit; `repeats` asks about another number of them.
+def reading_budget(readings: Sequence[Reading], gauge: Gauge | None) -> Budget:
+    """Uncertainty budget of the mean of repeats, in their unit.
 
     The resolution and the calibration don't shrink with repeats: the same leaf twice is not new evidence.
     """
     scale = float(readings[0].unit.scale)
     leaves = max(reading.leaves for reading in readings)
     own_quantity = gauge is None or gauge.quantity == readings[0].unit.dimension
-    values = [reading.value for reading in readings]
+    # censored readings only bound the value: their scatter tells nothing
+    values = [reading.value for reading in readings if reading.bound is None] or [readings[0].value]
     lines = [
         resolution_line(readings, gauge if own_quantity else None, scale),
-        repeatability_line(values, gauge, scale, repeats)
-        if own_quantity
-        else repeatability_line(values, None, scale, repeats),
+        repeatability_line(values, gauge if own_quantity else None, scale),
         *(calibration_lines(gauge, scale, leaves) if own_quantity else ()),
     ]
     return Budget(tuple(line for line in lines if line is not None))
 
 
 def mean_value(readings: Sequence[Reading], gauge: Gauge | None) -> tuple[float, float]:
-    """Mean of repeats in their unit, corrected for the gauge's error at that point, and the correction made."""
-    mean = fmean(reading.value for reading in readings)
+    """Mean of repeats in their unit (of censored ones the tightest bound), corrected for the gauge's error there; and by what."""
+    judged = tightest(readings)
+    mean = fmean(reading.value for reading in judged)
     if gauge is None or not gauge.errors or gauge.quantity != readings[0].unit.dimension:
         return mean, 0.0
     scale = float(readings[0].unit.scale)
-    correction = -gauge.error_at(fmean(reading.si_value for reading in readings)) / scale
+    correction = -gauge.error_at(fmean(reading.si_value for reading in judged)) / scale
     return mean + correction, correction
 
 
-def evidence_gaps(readings: Sequence[Reading], gauge: Gauge | None) -> list[Sentence]:
-    """Say what the budget lacks, so that u is a lower bound."""
-    missing = []
-    if gauge is None:
-        missing.append("no gauge is named")
-    elif not gauge.has_calibration:
-        missing.append("the gauge has neither certificate nor permissible error")
-    if len(readings) < FEWEST_OWN_REPEATS and (gauge is None or gauge.repeatability is None):
-        missing.append("there are fewer than four repeats and no repeat study")
-    return [say("u is a lower bound: {why}.", why=" and ".join(missing))] if missing else []
-
-
-def suitability(expanded: float, lower: float | None, upper: float | None, nominal: float | None) -> Sentence | None:
-    """Note a gauge whose U is over an eighth of the tolerance zone, and call it unsuitable over a third.
-
-    One-sided limits are measured from the nominal; without one nothing is said.
-    """
-    if lower is not None and upper is not None:
-        width = upper - lower
-    elif nominal is not None and (lower is not None or upper is not None):
-        width = abs((lower if upper is None else upper) - nominal)
-    else:
-        return None
-    share = expanded / width if width else inf
-    if share > UNSUITABLE_SHARE:
-        return say(
-            "This gauge is unsuitable here: its U is {share} % of the tolerance zone, over a third.",
-            share=round(100 * share),
-        )
-    if share > NOTED_SHARE:
-        return say("The gauge's U is {share} % of the tolerance zone, over an eighth.", share=round(100 * share))
-    return None
+def tightest(readings: Sequence[Reading]) -> Sequence[Reading]:
+    """Readings that make up the value: all repeats, or of censored ones the one that proves most; they are never averaged."""
+    if readings[0].bound is None:
+        return readings
+    pick = min if readings[0].bound == "below" else max
+    return [pick(readings, key=lambda reading: reading.value)]

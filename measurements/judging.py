@@ -10,39 +10,37 @@ from measurements.conformity import (
     Judgement,
     Zone,
     judge,
-    settling_expanded_uncertainty,
-    settling_repeats,
-    zone_uncertainty,
+    over,
 )
 from measurements.distributions import coverage_factor
 from measurements.entry import Entry
+from measurements.evidence import evidence_gaps, suitability
 from measurements.finding import Finding
 from measurements.gauge import (
     Budget,
     Gauge,
     Line,
     calibration_lines,
-    evidence_gaps,
     mean_value,
     reading_budget,
     repeatability_line,
-    suitability,
+    tightest,
 )
 from measurements.intake.document import Document
 from measurements.intake.measurement import Measurement
 from measurements.intake.shop import Shop
 from measurements.kind import Derived, Kind, Measured, Pass
-from measurements.limits import Limit, limit_for
+from measurements.limits import Limit, limit_for, rivals
 from measurements.sentence import Sentence, say
+from measurements.sentence import plain as readable
+from measurements.settling import settle, settle_derived, zone_notes
 from measurements.slip import Slip
 from measurements.units import Unit, find_unit, to_si
 
 STANDARD_BAROMETER = 101_325.0  # Pa; ISO 2533:1975
 
 
-def take(
-    measurement: Measurement, station: str, done: Pass, shop: Shop
-) -> tuple[Measured | None, list[Sentence], list[Sentence]]:
+def take(measurement: Measurement, station: str, done: Pass) -> tuple[Measured | None, list[Sentence], list[Sentence]]:
     """Bring one station's entry to the value judged: mean, gauge error, reference conditions; with notes and working.
 
     The value is None where an absolute pressure can't be brought to gauge pressure for want of a barometer.
@@ -61,11 +59,16 @@ def take(
         working.append(say("gauge pressure = absolute − barometer = {mean} {unit}", mean=mean, unit=unit.symbol))
     reference = measurement.kind.refer(characteristic, unit, with_size(done, mean, unit))
     value = mean * reference.factor + reference.shift
-    budget = Budget((*through(measurement, readings, done).times(abs(reference.factor)).lines, *reference.lines))
-    measured = Measured(
-        name, station, value, unit, budget, readings[0].bound, mean, bool(evidence_gaps(readings, gauge))
-    )
-    return measured, notes + list(reference.notes), working + list(reference.working)
+    own, gaps = through(measurement, readings, done)
+    budget = Budget((*own.times(abs(reference.factor)).lines, *reference.lines))
+    notes += [*gaps, *reference.notes]
+    measured = Measured(name, station, value, unit, budget, readings[0].bound, mean, any(map(lacks_evidence, notes)))
+    return measured, notes, working + list(reference.working)
+
+
+def lacks_evidence(note: Sentence) -> bool:
+    """Tell whether a note says that u is a lower bound."""
+    return note.template.startswith("u is a lower bound")
 
 
 def with_size(done: Pass, value: float, unit: Unit) -> Pass:
@@ -73,22 +76,36 @@ def with_size(done: Pass, value: float, unit: Unit) -> Pass:
     return replace(done, conditions={**done.conditions, "value": to_si(value, unit)})
 
 
-def through(measurement: Measurement, readings: Sequence, done: Pass, repeats: int | None = None) -> Budget:
-    """Budget of a reading, also where the gauge measures another quantity than was entered (a loss on a pressure dial)."""
-    budget = reading_budget(readings, measurement.gauge, repeats)
-    gauge = measurement.gauge
-    if gauge is None or gauge.quantity == readings[0].unit.dimension:
-        return budget
+def through(measurement: Measurement, readings: Sequence, done: Pass) -> tuple[Budget, list[Sentence]]:
+    """Budget of a reading, also where the gauge measures another quantity than was entered (a loss on a pressure dial).
+
+    The gauge's own resolution then gives way to the decimals typed; its calibration and its scatter count.
+    """
+    gauge, unit = measurement.gauge, readings[0].unit
+    budget = reading_budget(readings, gauge)
+    if gauge is None or gauge.quantity == unit.dimension:
+        return budget, []
     scale = measurement.kind.gauge_scale(gauge.quantity, done)
     if scale is None:
-        return budget
-    return Budget((*budget.lines, *calibration_lines(gauge, scale * float(readings[0].unit.scale))))
+        return budget, [say("u is a lower bound: what gauge {gauge} adds to it can't be told without the supply pressure.",
+                            gauge=gauge.name)]  # fmt: skip
+    scale *= float(unit.scale)
+    values = [reading.value for reading in tightest(readings)]
+    kept = [line for line in budget.lines if not line.name.startswith("repeatability")]
+    scatter = repeatability_line(values, gauge, scale)
+    notes = [say("The errors found at the calibration of gauge {gauge} are not corrected in a reading in {unit}.",
+                 gauge=gauge.name, unit=unit.symbol)] if gauge.errors else []  # fmt: skip
+    return Budget((*kept, *([scatter] if scatter else ()), *calibration_lines(gauge, scale))), notes
 
 
 def told_mean(entry: Entry, mean: float, correction: float) -> list[Sentence]:
     """Say how the value came from what was typed."""
     unit, told = entry.unit.symbol, []
-    if len(entry.readings) > 1:
+    if entry.readings[0].bound and len(entry.readings) > 1:
+        told.append(
+            say("of {n} bounds the one that proves most: {mean} {unit}", n=len(entry.readings), mean=mean, unit=unit)
+        )
+    elif len(entry.readings) > 1:
         told.append(say("mean of {n} repeats = {mean} {unit}", n=len(entry.readings), mean=mean, unit=unit))
     if entry.readings[0].half_width is not None:
         told.append(say("middle of the bracket = {mean} {unit}, half-width {half}", mean=mean, unit=unit,
@@ -126,12 +143,21 @@ def zone_of(
     if holds is False:
         warning = say("{station}: its limit holds {condition}, the reading was taken otherwise; no verdict.",
                       station=station or characteristic, condition=limit.condition.text)  # fmt: skip
-        return Zone(None, None, zone.rule), limit, [], warning
+        return Zone(None, None, zone.rule), None, [], warning
+    others = rivals(limits, limit, station, done.conditions.get("state"), done.conditions.get("part_temperature"))
+    if others:
+        held = [one.condition.text for one in (limit, *others)]
+        warning = say("{station}: it has one limit each for {conditions}, and the reading doesn't say which it was; "
+                      "no verdict.", station=station or characteristic, conditions=", ".join(held))  # fmt: skip
+        return Zone(None, None, zone.rule), None, [], warning
     notes = []
     if holds is None:
-        notes.append(
-            say("The limit holds {condition}; the reading doesn't say its own state.", condition=limit.condition.text)
-        )
+        if limit.condition.is_span:
+            notes.append(say("The limit holds {condition}; the temperature of the part is not given.",
+                             condition=limit.condition.text))  # fmt: skip
+        else:
+            notes.append(say("The limit holds {condition}; the reading doesn't say its own state.",
+                             condition=limit.condition.text))  # fmt: skip
     return zone, limit, notes, None
 
 
@@ -141,16 +167,19 @@ def judged(
 ) -> tuple[Finding, list[Sentence]]:  # fmt: skip
     """Judge a reading; warnings beside the finding."""
     unit, budget, shop = measured.unit, measured.budget, document.shop
-    zone, limit, more, warning = zone_of(document.limits, measured.characteristic, measured.station, done, unit, shop)
     exempt = measurement.kind.unlimited(done)
     if exempt:
-        zone, notes = Zone(None, None, zone.rule), [*notes, exempt]
+        zone, limit, more, warning = Zone(None, None, shop.decision_rule), None, [exempt], None
+    else:
+        zone, limit, more, warning = zone_of(
+            document.limits, measured.characteristic, measured.station, done, unit, shop
+        )
     verdict = judge(measured.value, u=budget.u, zone=zone, dof=budget.dof, bound=measured.bound)
     entry = measurement.entries[measured.station][1]
     needs = None
     if verdict.verdict == TOO_CLOSE and measured.bound is None:
-        needs = settle(measured, zone, lambda n: combined(measured, measurement, entry, done, n), len(entry.readings))
-    notes = [*notes, *more, *gauge_notes(measured, measurement, zone, limit), *measurement.kind.notes(measured, done),
+        needs = settle(measured, zone, len(entry.readings))
+    notes = [*notes, *more, *gauge_notes(measured, measurement, done, zone, limit), *measurement.kind.notes(measured, done),
              *zone_notes(verdict, zone, unit)]  # fmt: skip
     working = [*working, *budget.working(unit.symbol), *told_verdict(measured.value, zone, verdict, unit)]
     finding = Finding(
@@ -160,61 +189,32 @@ def judged(
     return finding, [warning] if warning else []
 
 
-def combined(measured: Measured, measurement: Measurement, entry: Entry, done: Pass, n: int) -> tuple[float, float]:
-    """Uncertainty and degrees of freedom of the mean if there were `n` repeats."""
-    scale = float(entry.unit.scale)
-    values = [reading.value for reading in entry.readings]
-    own = measurement.gauge if measurement.gauge and measurement.gauge.quantity == entry.unit.dimension else None
-    factor = abs(measured.value / measured.raw_value) if measured.raw_value else 1.0
-    fixed = [line for line in measured.budget.lines if not line.name.startswith("repeatability")]
-    scatter = repeatability_line(values, own, scale, n)
-    budget = Budget((*fixed, scatter.times(factor)) if scatter else tuple(fixed))
-    return budget.u, budget.dof
-
-
-def settle(measured: Measured, zone: Zone, combined_at, taken: int) -> dict[str, object]:  # noqa: ANN001
-    """Say what would settle a close call: how many readings in all, else the expanded uncertainty it takes."""
-    repeats = settling_repeats(measured.value, zone=zone, combined=combined_at, taken=taken)
-    if repeats:
-        return {"repeats": repeats, "expanded_uncertainty": None,
-                "sentence": say("{n} readings in all would settle it, if their mean stays.", n=repeats)}  # fmt: skip
-    expanded = settling_expanded_uncertainty(measured.value, zone=zone)
-    if expanded is None:
-        return {"repeats": None, "expanded_uncertainty": None,
-                "sentence": say("The value stands on its limit: no gauge settles that.")}  # fmt: skip
-    return {"repeats": None, "expanded_uncertainty": expanded,
-            "sentence": say("Repeats can't settle it; a reading with U of {expanded} {unit} or less would.",
-                            expanded=float(f"{expanded:.2g}"), unit=measured.unit.symbol)}  # fmt: skip
-
-
-def gauge_notes(measured: Measured, measurement: Measurement, zone: Zone, limit: Limit | None) -> list[Sentence]:
+def gauge_notes(
+    measured: Measured, measurement: Measurement, done: Pass, zone: Zone, limit: Limit | None
+) -> list[Sentence]:  # fmt: skip
     """Say what speaks against the gauge for this reading."""
     if measurement.gauge is None:
         return []
-    entry = measurement.entries[measured.station][1]
-    found = []
-    if measurement.gauge.quantity == entry.unit.dimension:
-        found += measurement.gauge.complaints(entry.readings[0].si_value, measurement.taken_on)
-    else:
-        found += replace(measurement.gauge, range_lower=None, range_upper=None).complaints(0.0, measurement.taken_on)
+    readings = measurement.entries[measured.station][1].readings
+    gauge = measurement.gauge
+    if gauge.quantity != readings[0].unit.dimension:
+        gauge = replace(gauge, range_lower=None, range_upper=None)
+    shown = [min(reading.si_value for reading in readings), max(reading.si_value for reading in readings)]
+    if "set_size" in done.conditions:  # a bore gauge's range is told in the sizes it can be set to
+        shown = [to_si(measured.value, measured.unit)]
+    found = list(
+        {str(one): one for si_value in shown for one in gauge.complaints(si_value, measurement.taken_on)}.values()
+    )
     nominal = limit.figure("nominal", measured.unit) if limit else None
     unsuited = suitability(measured.budget.expanded, zone.lower, zone.upper, nominal)
     return found + ([unsuited] if unsuited and not zone.is_open else [])
-
-
-def zone_notes(verdict: Judgement, zone: Zone, unit: Unit) -> list[Sentence]:
-    """Say so where no reading can be proven within."""
-    if not verdict.vanished:
-        return []
-    return [say("With this uncertainty no reading can be proven within these limits: it takes a U under {expanded} {unit}.",
-                expanded=float(f"{zone_uncertainty(zone):.2g}"), unit=unit.symbol)]  # fmt: skip
 
 
 def told_verdict(value: float, zone: Zone, verdict: Judgement, unit: Unit) -> list[Sentence]:
     """Spell the comparison out."""
     if zone.is_open:
         return []
-    limits = " to ".join("open" if edge is None else f"{edge:.6g}" for edge in (zone.lower, zone.upper))
+    limits = " to ".join("open" if edge is None else str(readable(edge)) for edge in (zone.lower, zone.upper))
     told = [say("rule {rule}: guard band {w} {unit} at limits {limits}", rule=zone.rule, w=verdict.guard_band, unit=unit.symbol,
                 limits=limits)]  # fmt: skip
     if verdict.probability_within is not None:
@@ -242,12 +242,7 @@ def derived_finding(derived: Derived, kind: Kind, done: Pass, document: Document
     if u is None:
         zone = replace(zone, rule="simple") if not zone.is_open else zone
     verdict = judge(derived.value, u=u or 0.0, zone=zone, dof=budget.dof)
-    needs = None
-    if verdict.verdict == TOO_CLOSE:
-        expanded = settling_expanded_uncertainty(derived.value, zone=zone)
-        needs = {"repeats": None, "expanded_uncertainty": expanded,
-                 "sentence": say("A value with U of {expanded} {unit} or less would settle it.",
-                                 expanded=expanded and float(f"{expanded:.2g}"), unit=derived.unit)}  # fmt: skip
+    needs = settle_derived(derived.value, zone, unit) if verdict.verdict == TOO_CLOSE else None
     working = [*derived.working, *(budget.working(derived.unit) if u is not None else ()),
                *told_verdict(derived.value, zone, verdict, unit)]  # fmt: skip
     finding = Finding(
@@ -275,7 +270,7 @@ def inherited(derived: Derived, zone: Zone, unit: Unit) -> list[Sentence]:
 
 def outside(value: float, edge: float, side: str) -> bool:
     """Tell whether a value lies past an edge."""
-    return value > edge if side == "over" else value < edge
+    return over(value, edge) if side == "over" else over(edge, value)
 
 
 def propagated(sensitivities: Sequence[tuple[float, Measured]]) -> tuple[Line, ...]:

@@ -91,7 +91,9 @@ class Measured:
         if unit == self.unit:
             return self
         factor = convert_difference(1.0, self.unit, unit)
-        return replace(self, value=convert(self.value, self.unit, unit), unit=unit, budget=self.budget.times(factor))
+        raw = None if self.raw_value is None else convert(self.raw_value, self.unit, unit)
+        value = convert(self.value, self.unit, unit)
+        return replace(self, value=value, raw_value=raw, unit=unit, budget=self.budget.times(factor))
 
 
 @dataclass(frozen=True)
@@ -187,6 +189,8 @@ class Kind:
         Pass → derived values and warnings; (Characteristic, Unit, Pass) → Reference; (Measured, Pass) → notes.
     gauge_scale : callable
         (quantity of the gauge, Pass) → its SI units per SI unit of the entry, or None where the gauge can't show it.
+    reads_through : frozenset of (quantity, dimension)
+        Gauges of another quantity that an entry may be read on: a loss in percent on a pressure gauge.
     acts : tuple of str
         Acts it asks for when a value is outside its setting zone.
     words : mapping
@@ -207,11 +211,16 @@ class Kind:
     refer: Callable[[Characteristic, Unit, Pass], Reference] = lambda characteristic, unit, done: Reference()
     notes: Callable[[Measured, Pass], Iterable[Sentence]] = no_notes
     gauge_scale: Callable[[str, Pass], float | None] = lambda quantity, done: None
+    reads_through: frozenset[tuple[str, str]] = frozenset()
     acts: tuple[str, ...] = ()
     unlimited: Callable[[Pass], Sentence | None] = lambda done: None
     refused: Callable[[Mapping[str, object], Engine], Iterable[tuple[str, Sentence]]] = lambda conditions, engine: ()
     words: Mapping[str, str] = field(default_factory=dict)
     published: tuple[CheckValue, ...] = ()
+
+    def gauge_quantities(self) -> set[str]:
+        """Quantities of the gauges that it can be measured with."""
+        return {one.dimension for one in self.entered} | {quantity for quantity, _ in self.reads_through}
 
     def characteristic(self, name: str) -> Characteristic | None:
         """Find one of its characteristics by name."""

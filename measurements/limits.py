@@ -84,8 +84,7 @@ class Limit:
     def zone(self, phase: str, unit: Unit, *, shop_rule: str = GUARDED, shop_setting_rule: str = SIMPLE) -> Zone:
         """Zone a reading of `phase` is judged against, in `unit`: as left goes by the setting zone where there is one."""
         if phase == AS_LEFT and self.has_setting_zone:
-            rule = self.setting_rule or shop_setting_rule
-            return Zone(self.figure("set_lower", unit), self.figure("set_upper", unit), rule)
+            return Zone(*self.setting_ends(unit), self.setting_rule or shop_setting_rule)
         rule = SIMPLE if self.allows_for_gauge else self.rule or shop_rule
         return Zone(self.figure("lower", unit), self.figure("upper", unit), rule)
 
@@ -93,6 +92,12 @@ class Limit:
     def has_setting_zone(self) -> bool:
         """Tell whether the sheet says where to set the value."""
         return self.set_lower is not None or self.set_upper is not None
+
+    def setting_ends(self, unit: Unit) -> tuple[float | None, float | None]:
+        """Ends of the setting zone, in `unit`; a side it leaves open is closed by the service limit."""
+        sides = (("set_lower", "lower"), ("set_upper", "upper"))
+        return tuple(self.figure(setting if getattr(self, setting) is not None else service, unit)
+                     for setting, service in sides)  # fmt: skip
 
     @property
     def target(self) -> float | None:
@@ -115,10 +120,28 @@ class Limit:
                 text = say("{low} {bottom} is not below {high} {top}: give the smaller figure as {low}.",
                            low=low, bottom=bottom, high=high, top=top)  # fmt: skip
                 found.append((low, text))
+        if not found:
+            found += self._outside()
         figures = (self.lower, self.upper, self.set_lower, self.set_upper)
         if all(figure is None for figure in figures):
             found.append(("", say("The limit has no figure: give lower, upper, set_lower or set_upper.")))
         return found
+
+    def _outside(self) -> list[tuple[str, Sentence]]:
+        """Say which figure lies outside the span that should hold it: a turn to such a nominal would spoil the setting."""
+        spans = (
+            ("nominal", "set_lower", "set_upper"), ("nominal", "lower", "upper"),
+            ("set_lower", "lower", "upper"), ("set_upper", "lower", "upper"),
+        )  # fmt: skip
+        for name, low, high in spans:
+            value, bottom, top = (getattr(self, figure) for figure in (name, low, high))
+            edge = low if value is not None and bottom is not None and value < bottom else (
+                high if value is not None and top is not None and value > top else None)  # fmt: skip
+            if edge:
+                return [(name, say("{name} {value} lies {side} {edge} {figure}: one of the two is wrong.", name=name,
+                                   value=value, side="under" if edge == low else "over", edge=edge,
+                                   figure=getattr(self, edge)))]  # fmt: skip
+        return []
 
 
 def limit_for(
@@ -147,12 +170,26 @@ def _rank(limit: Limit, state: str | None, part_temperature: float | None) -> in
     return {True: 0, None: 2, False: 3}[limit.condition.holds(state, part_temperature)]
 
 
+def rivals(
+    limits: Iterable[Limit], best: Limit, station: str | None, state: str | None, part_temperature: float | None
+) -> list[Limit]:
+    """Limits that may hold as well as the one picked, for the reading doesn't say which of their conditions it met."""
+    if best.condition is None or best.condition.holds(state, part_temperature) is not None:
+        return []
+    return [
+        limit for limit in limits
+        if limit is not best and limit.characteristic == best.characteristic and bool(limit.stations) == bool(best.stations)
+        and (not limit.stations or station in limit.stations) and _rank(limit, state, part_temperature) == 2
+    ]  # fmt: skip
+
+
 def repeated(limits: Sequence[Limit]) -> list[int]:
-    """Places of limits that say again what an earlier one says for the same characteristic, condition and stations."""
-    seen, again = set(), []
+    """Places of limits that speak again for a characteristic, condition and station that an earlier one speaks for."""
+    seen: dict[tuple, list[frozenset[str]]] = {}
+    again = []
     for place, limit in enumerate(limits):
-        key = (limit.characteristic, limit.condition and limit.condition.text.lower(), limit.stations)
-        if key in seen:
+        earlier = seen.setdefault((limit.characteristic, limit.condition and limit.condition.text.lower()), [])
+        if any(limit.stations & stations or limit.stations == stations for stations in earlier):
             again.append(place)
-        seen.add(key)
+        earlier.append(limit.stations)
     return again

@@ -14,7 +14,7 @@ ICE_POINT = 273.15  # K
 def comparator_reference(unit: Unit, conditions: Mapping[str, object], typed_units: Mapping[str, Unit]) -> Reference:
     """Turn signed deviations into sizes: set size + deviation − mean zero, with the master's and the zero's lines.
 
-    A zero that moved more than a division (the decimals it was typed with stand for it) flags all readings between.
+    A zero that moved more than a division (of the gauge's resolution where none is given) flags all readings between.
     """
     if "set_size" not in conditions:
         return Reference()
@@ -37,8 +37,10 @@ def comparator_reference(unit: Unit, conditions: Mapping[str, object], typed_uni
     if len(zeros) == 2:
         drift = abs(zeros[1] - zeros[0])
         if drift:
-            lines.append(Line("comparator zero", "rectangular", rectangular(drift / 2), shared="comparator zero"))
-        division = conditions.get("division", 0.0) / scale
+            lines.append(
+                Line("comparator zero", "rectangular", rectangular(drift / 2))
+            )  # it moved while readings were taken
+        division = conditions.get("division", conditions.get("gauge_resolution", 0.0)) / scale
         if drift > division * (1 + 1e-9):
             notes.append(say("The comparator's zero moved by {drift} {unit} during this pass: set it again and measure again.",
                              drift=drift, unit=unit.symbol))  # fmt: skip
@@ -55,6 +57,8 @@ def size_reference(unit: Unit, conditions: Mapping[str, object], before: Referen
     assumed: the size stands as taken, and a note says so. The same holds for the gauge.
     """
     part = conditions.get("part_temperature")
+    if part is None and "gauge_temperature" in conditions:
+        return add_note(before, say("The gauge's temperature is given but not the part's: not referred to 20 °C."))
     if part is None:
         return before
     scale = float(unit.scale)

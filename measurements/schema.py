@@ -16,6 +16,7 @@ DIALECT = "https://json-schema.org/draft/2020-12/schema"
 TYPED = {"type": ["string", "number"], "description": 'a figure with its unit, as typed: "0.30 mm"'}
 DAY = {"type": "string", "pattern": "^[0-9]{4}-[0-9]{2}-[0-9]{2}$"}
 WORD = {"type": "string", "minLength": 1}
+CYLINDERS = {"propertyNames": {"pattern": "^[0-9]{1,3}$"}}
 NUMBER_OR_NULL = {"type": ["number", "null"]}
 
 
@@ -71,6 +72,7 @@ def engine_in() -> dict[str, object]:
     train = {
         "adjustment": one_of(("screw", "shim", "hydraulic")), "screw_pitch": TYPED, "screw_ratio": {"type": "number"},
         "shim_ratio": {"type": "number"}, "thread": one_of(("right", "left")), "bridges": {"type": "boolean"},
+        "inward_closes": {"type": "boolean"},
         "margin": {"type": "number"}, "events": fields({name: {"type": "number"} for name in EVENTS}, EVENTS),
     }  # fmt: skip
     return fields(
@@ -145,11 +147,11 @@ def condition_in(condition: MethodCondition) -> dict[str, object]:
     return {
         "quantity": TYPED,
         "quantities": list_of(TYPED),
-        "quantity_by_cylinder": by_name(TYPED),
+        "quantity_by_cylinder": by_name(TYPED) | CYLINDERS,
         "flag": {"type": "boolean"},
         "count": {"type": "integer", "minimum": 1},
         "choice": one_of(condition.choices),
-        "choices_by_cylinder": by_name(list_of(one_of(condition.choices))),
+        "choices_by_cylinder": by_name(list_of(one_of(condition.choices))) | CYLINDERS,
     }[condition.form]
 
 

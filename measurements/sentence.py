@@ -25,8 +25,10 @@ def say(template: str, **values: object) -> Sentence:
 
 
 def plain(value: object) -> object:
-    """Write a number the way a person does: six significant digits at most, never an exponent for everyday sizes."""
+    """Write a number the way a person does: six significant digits, of large sizes four decimals; no everyday exponents."""
     if isinstance(value, float):
+        if 100 <= abs(value) < 1e6:  # a 250.0135 mm bore is not 250.013
+            return f"{value:.4f}".rstrip("0").rstrip(".")
         text = f"{value:.6g}"
         return f"{value:.12f}".rstrip("0").rstrip(".") if "e-" in text and abs(value) > 1e-9 else text
     return value

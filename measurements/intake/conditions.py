@@ -19,14 +19,35 @@ def read_conditions(
     values, units = {}, {}
     if not node.is_object(declared):
         return values, units
-    for name, condition in declared.items():
+    # the barometer first: an absolute pressure beside it is brought to gauge with it
+    for name, condition in sorted(declared.items(), key=lambda one: one[0] != "barometer"):
         if node.has(name):
             value, unit = read_one_condition(node.child(name), condition, engine, shop, limits)
+            if value is not None and unit is not None and is_absolute(node.child(name), condition, shop):
+                value = to_gauge(node.child(name), value, values.get("barometer", shop.barometer))
             if value is not None:
                 values[name] = value
             if unit is not None:
                 units[name] = unit
     return values, units
+
+
+def is_absolute(node: Node, condition: MethodCondition, shop: Shop) -> bool:
+    """Tell whether a gauge pressure was typed as an absolute one."""
+    if condition.form != "quantity" or condition.dimension != "pressure" or condition.absolute:
+        return False
+    entry = Node(node.value, node.path, []).entry(Field("pressure", condition.unit), shop.decimal_mark)
+    return entry is not None and entry.readings[0].absolute
+
+
+def to_gauge(node: Node, absolute: float, barometer: float | None) -> float | None:
+    """Gauge pressure [Pa] of an absolute one."""
+    if barometer is None:
+        node.wrong(
+            "Read {read}, an absolute pressure: give the barometer too, or the gauge pressure.", read=node.told()
+        )
+        return None
+    return absolute - barometer
 
 
 def read_one_condition(

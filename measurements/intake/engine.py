@@ -15,7 +15,9 @@ ENGINE_FIELDS = (
     "compression_ratio", "rated_speed", "valves_per_cylinder", "valve_train", "service", "turning", "seen_from",
     "numbered_from",
 )  # fmt: skip
-VALVE_TRAIN_FIELDS = ("adjustment", "screw_pitch", "screw_ratio", "shim_ratio", "thread", "events", "margin", "bridges")
+VALVE_TRAIN_FIELDS = (
+    "adjustment", "screw_pitch", "screw_ratio", "shim_ratio", "thread", "inward_closes", "events", "margin", "bridges",
+)  # fmt: skip
 EVENTS = ("intake_opens_btdc", "intake_closes_abdc", "exhaust_opens_bbdc", "exhaust_closes_atdc")
 
 
@@ -102,8 +104,7 @@ def read_valve_train(node: Node, mark: str | None) -> dict[str, object]:
         told["adjustment"] = node.child("adjustment").choice(("screw", "shim", "hydraulic"))
     if node.has("thread"):
         told["thread"] = node.child("thread").choice(("right", "left"))
-    if node.has("bridges"):
-        told["bridges"] = node.child("bridges").flag()
+    told |= {name: node.child(name).flag() for name in ("bridges", "inward_closes") if node.has(name)}
     told |= sizes_of(node, ("screw_pitch",), mark)
     for name, most in (("screw_ratio", 10), ("shim_ratio", 10)):
         if node.has(name):

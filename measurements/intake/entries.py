@@ -35,7 +35,7 @@ def read_entries(
         if typed is None:
             continue
         characteristic, entry, limit = typed
-        refuse_foreign_gauge(one, characteristic, gauge, kind, conditions)
+        refuse_foreign_gauge(one, characteristic, gauge, kind)
         if characteristic.most is not None:
             for reading in entry.readings:
                 if convert(reading.value, reading.unit, find_unit(characteristic.unit)) > characteristic.most:
@@ -80,16 +80,12 @@ def station_of(name: str, node: Node, kind: Kind, engine: Engine | None) -> str 
         return None
 
 
-def refuse_foreign_gauge(
-    node: Node, characteristic: Characteristic, gauge: Gauge | None, kind: Kind, conditions: Mapping
-) -> None:
-    """Refuse a gauge that measures something else than what was entered."""
-    if gauge is None or gauge.quantity == characteristic.dimension:
-        return
-    if any(one.dimension == gauge.quantity for one in kind.entered):
-        return  # the kind knows how to read through it: a loss in percent on a pressure gauge
-    node.wrong("Gauge {gauge} measures {quantity}; this reading is a {dimension}.", gauge=gauge.name,
-               quantity=gauge.quantity, dimension=characteristic.dimension)  # fmt: skip
+def refuse_foreign_gauge(node: Node, characteristic: Characteristic, gauge: Gauge | None, kind: Kind) -> None:
+    """Refuse an entry that this gauge can't have shown."""
+    dimension = characteristic.dimension
+    if gauge and gauge.quantity != dimension and (gauge.quantity, dimension) not in kind.reads_through:
+        node.wrong("Read {read}, a {dimension}, but gauge {gauge} shows {quantity}.", read=node.told(),
+                   dimension=dimension, gauge=gauge.name, quantity=gauge.quantity)  # fmt: skip
 
 
 def read_not_measured(node: Node, kind: Kind, engine: Engine | None, entries: Mapping[str, object]) -> dict[str, str]:

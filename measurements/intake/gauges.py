@@ -60,6 +60,9 @@ def gauge_figure(node: Node, quantity: str, shop: Shop, signed: bool = False) ->
     dimension = "temperature_difference" if quantity == "temperature" else quantity
     field_ = Field(dimension, DIMENSIONS[dimension][0].symbol, "figure", signed=signed)
     reading = node.quantity(field_, shop.decimal_mark)
+    if reading is not None and reading.absolute:
+        node.wrong("Read {read}: a gauge's figures are gauge pressures; leave abs out.", read=node.told())
+        return None
     return None if reading is None else reading.si_value
 
 

@@ -57,11 +57,14 @@ def read_measurement(
         warnings.append(say("Measurement {place}: its phase is not given; judged as found.", place=place))
     taken_on = node.child("taken_on").day() if node.has("taken_on") else None
     hours = read_hours(node.child("hours"), shop) if node.has("hours") else None
-    gauge = read_gauge_name(node, gauges)
+    gauge = read_gauge_name(node, gauges, kind)
     if gauge is None and not node.has("gauge"):
         warnings.append(
             say("Measurement {place}: no gauge is named, so its calibration is missing from u.", place=place)
         )
+    if gauge and gauge.due_on and not node.has("taken_on"):
+        warnings.append(say("Measurement {place}: its day is not given, so it can't be told whether gauge {gauge}, due {due}, "
+                            "was past due.", place=place, gauge=gauge.name, due=gauge.due_on.isoformat()))  # fmt: skip
     for name in ("measured_by", "keyed_by"):
         if node.has(name):
             node.child(name).text(200)
@@ -97,12 +100,18 @@ def read_hours(node: Node, shop: Shop) -> float | None:
     return node.number(0, 10_000_000)
 
 
-def read_gauge_name(node: Node, gauges: Mapping[str, Gauge]) -> Gauge | None:
-    """Find the gauge a measurement names."""
+def read_gauge_name(node: Node, gauges: Mapping[str, Gauge], kind: Kind | None) -> Gauge | None:
+    """Find the gauge a measurement names; one of another quantity is an error."""
     if not node.has("gauge"):
         return None
     name = node.child("gauge")
     if not isinstance(name.value, str) or name.value not in gauges:
         name.wrong("No gauge has the id {read}; there are {known}.", read=name.told(), known=named(gauges) or "none")
         return None
-    return gauges[name.value]
+    gauge = gauges[name.value]
+    if kind and gauge.quantity not in kind.gauge_quantities():
+        name.wrong("Gauge {gauge} measures {quantity}; {kind} is measured with a gauge of {fitting}.", gauge=gauge.name,
+                   quantity=gauge.quantity, kind=kind.title.lower(),
+                   fitting=" or ".join(sorted(kind.gauge_quantities())))  # fmt: skip
+        return None
+    return gauge

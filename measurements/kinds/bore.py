@@ -86,6 +86,7 @@ def cylinders_of(done: Pass) -> dict[str, dict[str, dict[str, Measured]]]:
 def derive(done: Pass) -> Iterable[Derived | Sentence]:
     """Give each cylinder's taper, out-of-round, wear, piston clearance and oversize, as far as measured."""
     oversizes = []
+    yield from left_out(done)
     for cylinder, places in cylinders_of(done).items():
         sizes = {depth: {way: one.value for way, one in ways.items()} for depth, ways in places.items()}
         yield from between_places("bore.taper", taper, cylinder, places, sizes)
@@ -95,10 +96,24 @@ def derive(done: Pass) -> Iterable[Derived | Sentence]:
         oversizes.extend(one for one in oversize(cylinder, places, done))
     yield from oversizes
     sized = [one for one in oversizes if isinstance(one, Derived)]
-    if len(sized) > 1:
+    if len(sized) > 1 and len(sized) == len(oversizes):
         largest = max(sized, key=lambda one: one.value)
         yield Derived("bore.oversize", None, largest.value, largest.unit,
                       working=(say("All cylinders of an engine to one size: the largest any of them needs."),))  # fmt: skip
+
+
+def left_out(done: Pass) -> Iterable[Sentence]:
+    """Say what can't be derived for want of a figure."""
+    wanted = [name for name in ("original_diameter", "cleanup_allowance") if name not in done.conditions]
+    if "oversizes" in done.conditions and wanted:
+        yield say("Oversizes are left out: {wanted} not given.", wanted=" and ".join(wanted).replace("_", " "))
+    if "set_size" not in done.conditions and {"zero_before", "zero_after", "set_uncertainty"} & done.conditions.keys():
+        yield say("The comparator's zero and master count only where set_size is given; readings are taken as sizes.")
+    grouped = cylinders_of(done)
+    for cylinder in done.conditions.get("piston_diameters", {}):
+        if not any("thrust" in ways for ways in grouped.get(str(cylinder), {}).values()):
+            yield say("Piston clearance of cylinder {cylinder} is left out: no thrust diameter was read.",
+                      cylinder=cylinder)  # fmt: skip
 
 
 def between_places(
@@ -109,14 +124,20 @@ def between_places(
     if high is None:
         return
     top, bottom = places[high[0]][high[1]], places[low[0]][low[1]]
-    missing = [f"{depth} {way}" for depth in BORE_DEPTHS for way in BORE_DIRECTIONS if way not in sizes.get(depth, ())]
     notes = [say("Two-point diameters can't see odd lobes.")] if name == "bore.out_of_round" else []
-    if missing:
-        notes.append(say("Not measured: {missing}; the true figure can be larger.", missing=", ".join(missing)))
+    notes += unseen(places)
     told = say(
         "{top} ({high}) − {bottom} ({low})", top=top.value, bottom=bottom.value, high=" ".join(high), low=" ".join(low)
     )
     yield Derived(name, cylinder, value, top.unit.symbol, ((1.0, top), (-1.0, bottom)), (told,), tuple(notes))
+
+
+def unseen(places: Mapping[str, Mapping[str, Measured]], ways: Sequence[str] = BORE_DIRECTIONS) -> tuple[Sentence, ...]:
+    """Name the places of a bore without a figure, which may be its worst."""
+    missing = [f"{depth} {way}" for depth in BORE_DEPTHS for way in ways if way not in places.get(depth, ())]
+    if not missing:
+        return ()
+    return (say("Without a figure: {missing}; the true value can be larger.", missing=", ".join(missing)),)
 
 
 def all_readings(places: Mapping[str, Mapping[str, Measured]]) -> list[Measured]:
@@ -133,7 +154,7 @@ def worn(cylinder: str, places: Mapping[str, Mapping[str, Measured]], done: Pass
     original /= float(largest.unit.scale)
     yield Derived("bore.wear", cylinder, largest.value - original, largest.unit.symbol, ((1.0, largest),),
                   (say("largest {largest} ({place}) − original {original}, as stated", largest=largest.value,
-                       place=largest.station, original=original),))  # fmt: skip
+                       place=largest.station, original=original),), unseen(places))  # fmt: skip
 
 
 def clearance(cylinder: str, places: Mapping[str, Mapping[str, Measured]], done: Pass) -> Iterable[Derived]:
@@ -146,7 +167,7 @@ def clearance(cylinder: str, places: Mapping[str, Mapping[str, Measured]], done:
     skirt /= float(largest.unit.scale)
     yield Derived("bore.piston_clearance", cylinder, largest.value - skirt, largest.unit.symbol, ((1.0, largest),),
                   (say("largest thrust diameter {largest} ({place}) − skirt {skirt}, as stated", largest=largest.value,
-                       place=largest.station, skirt=skirt),),
+                       place=largest.station, skirt=skirt),), unseen(places, ("thrust",)),
                   extra={"smallest": smallest.value - skirt})  # fmt: skip
 
 
@@ -173,7 +194,7 @@ def oversize(cylinder: str, places: Mapping[str, Mapping[str, Measured]], done: 
         yield say("No oversize offered cleans cylinder {cylinder} up: its wear is {wear} {unit}.", cylinder=cylinder,
                   wear=wear, unit=unit)  # fmt: skip
     else:
-        yield Derived("bore.oversize", cylinder, chosen, unit, working=(
+        yield Derived("bore.oversize", cylinder, chosen, unit, notes=unseen(places), working=(
             say("wear {wear}{twice} + allowance {allowance} {unit}: smallest offered size that reaches it", wear=wear,
                 twice=" × 2" if way == "original_axis" else "", allowance=allowance, unit=unit),))  # fmt: skip
 

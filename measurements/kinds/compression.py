@@ -1,10 +1,12 @@
 """Compression: the highest cranking pressure of each cylinder, dry or wet, at a reference barometer."""
 
 from collections.abc import Iterable, Mapping
+from dataclasses import replace
 
 from measurements.air import end_pressure, gauge_at_reference
 from measurements.check_value import CheckValue
 from measurements.engine import Engine
+from measurements.evenness import adjacent_low_pair, lowest_share, spread
 from measurements.kind import (
     COMMON_CONDITIONS,
     CRANKED,
@@ -19,29 +21,9 @@ from measurements.kind import (
 )
 from measurements.sentence import Sentence, say
 from measurements.stations import cylinder_stations, parse_cylinder_station
-from measurements.units import Unit, convert_difference
+from measurements.units import Unit, convert_difference, find_unit
 
 SLOW_CRANKING = 140  # rpm; common practice: under it a compression-ignition reading is doubtful
-
-
-def spread(highest: float, lowest: float) -> float:
-    """Spread [%] = (highest − lowest) / highest.
-
-    >>> round(spread(168, 120), 1)
-    28.6
-    """
-    return 100 * (highest - lowest) / highest
-
-
-def lowest_share(highest: float, lowest: float) -> float:
-    """Lowest as a share [%] of the highest.
-
-    Source: the 75 % rule; of 445 and 405 psi the lowest has 91 % (TM 5-3895-359-14&P figures).
-
-    >>> round(lowest_share(445, 405))
-    91
-    """
-    return 100 * lowest / highest
 
 
 def wet_gain(dry: float, wet: float) -> float:
@@ -51,23 +33,6 @@ def wet_gain(dry: float, wet: float) -> float:
     25.0
     """
     return 100 * (wet - dry) / dry
-
-
-def adjacent_low_pair(values: Mapping[int, float], neighbours: Mapping[int, tuple[int, ...]]) -> tuple[int, int] | None:
-    """Two neighbours that both stand below every other cylinder by more than those differ among themselves.
-
-    Source: common practice: two adjacent low speak for the gasket between them.
-
-    >>> adjacent_low_pair({1: 12.1, 2: 8.0, 3: 8.4, 4: 12.0}, {1: (2,), 2: (1, 3), 3: (2, 4), 4: (3,)})
-    (2, 3)
-    """
-    if len(values) < 4:
-        return None
-    order = sorted(values, key=values.get)
-    low, others = sorted(order[:2]), [values[cylinder] for cylinder in order[2:]]
-    gap = min(others) - values[order[1]]
-    apart = gap > max(others) - min(others) and gap > values[order[1]] - values[order[0]]
-    return tuple(low) if apart and low[1] in neighbours.get(low[0], ()) else None
 
 
 def barometer_of(done: Pass) -> float | None:
@@ -99,10 +64,16 @@ def derive(done: Pass) -> Iterable[Derived | Sentence]:
         yield expected(done)
 
 
-def derive_evenness(done: Pass) -> Iterable[Derived]:
+def derive_evenness(done: Pass) -> Iterable[Derived | Sentence]:
     """Spread, difference and lowest share over the cylinders measured."""
     readings = done.comparable()
     if len(readings) < 2:
+        return
+    bounded = [one for one in done.measured.values() if one.bound]
+    if bounded:
+        told = ", ".join(f"{one.station} ({one.bound} {one.value:g} {one.unit.symbol})" for one in bounded)
+        yield say("Evenness is left out: of cylinder {told} only a bound is known, and it may be the lowest or highest.",
+                  told=told)  # fmt: skip
         return
     top = max(readings.values(), key=lambda one: one.value)
     low = min(readings.values(), key=lambda one: one.value)
@@ -110,53 +81,94 @@ def derive_evenness(done: Pass) -> Iterable[Derived]:
         yield say("Evenness is left out: the highest reading is not above zero.")
         return
     unit, h, l = top.unit.symbol, top.value, low.value  # noqa: E741
+    refer_to = difference_factor(done)
     told = say("highest {h} {unit} (cylinder {top}), lowest {l} {unit} (cylinder {low})", h=h, l=l, unit=unit,
                top=top.station, low=low.station)  # fmt: skip
-    notes = evenness_notes(done, readings)
+    notes = no_figure(done, readings)
     yield Derived("compression.spread", None, spread(h, l), "%", ((100 * l / h**2, top), (-100 / h, low)),
-                  (told, say("spread = (highest − lowest) / highest")), (),
+                  (told, say("spread = (highest − lowest) / highest")), notes,
                   {station: spread(h, one.value) for station, one in readings.items()})  # fmt: skip
-    yield Derived("compression.difference", None, h - l, unit, ((1.0, top), (-1.0, low)),
-                  (told, say("difference = highest − lowest")), notes,
-                  {station: h - one.value for station, one in readings.items()})  # fmt: skip
+    yield Derived("compression.difference", None, refer_to * (h - l), unit, ((refer_to, top), (-refer_to, low)),
+                  (told, say("difference = highest − lowest")), (*gasket_notes(done, readings), *notes),
+                  {station: refer_to * (h - one.value) for station, one in readings.items()})  # fmt: skip
     yield Derived("compression.lowest_share", None, lowest_share(h, l), "%", ((-100 * l / h**2, top), (100 / h, low)),
-                  (told, say("lowest share = lowest / highest")), (),
+                  (told, say("lowest share = lowest / highest")), notes,
                   {station: lowest_share(h, one.value) for station, one in readings.items()})  # fmt: skip
 
 
-def evenness_notes(done: Pass, readings: Mapping[str, Measured]) -> tuple[Sentence, ...]:
-    """Say what the evenness can't: two low neighbours, and cylinders without a figure."""
-    told = []
+def difference_factor(done: Pass) -> float:
+    """What brings a difference to the barometer its own limit is stated for."""
+    if barometer_of(done) is None or "reference_barometers" not in done.conditions:
+        return 1.0
+    return done.conditions["reference_barometers"]["compression.difference"] / done.conditions["reference_barometer"]
+
+
+def gasket_notes(done: Pass, readings: Mapping[str, Measured]) -> tuple[Sentence, ...]:
+    """Point at two low neighbours."""
     neighbours = {int(station): done.engine.neighbours(int(station)) for station in readings}
     pair = adjacent_low_pair({int(station): one.value for station, one in readings.items()}, neighbours)
-    if pair:
-        told.append(say("Neighbours {first} and {second} both stand well below the others: the gasket between them "
-                        "is the first thing to look at.", first=pair[0], second=pair[1]))  # fmt: skip
+    if not pair:
+        return ()
+    return (say("Neighbours {first} and {second} both stand well below the others: the gasket between them "
+                "is the first thing to look at.", first=pair[0], second=pair[1]),)  # fmt: skip
+
+
+def no_figure(done: Pass, readings: Mapping[str, Measured]) -> tuple[Sentence, ...]:
+    """Name the cylinders that the evenness leaves out."""
     missing = [str(cylinder) for cylinder in range(1, done.engine.cylinders + 1) if str(cylinder) not in readings]
-    if missing:
-        told.append(say("Without cylinder {missing}, which has no figure to compare.", missing=", ".join(missing)))
-    return tuple(told)
+    return (say("No figure to compare from cylinder {missing}.", missing=", ".join(missing)),) if missing else ()
 
 
 def derive_wet_gain(done: Pass) -> Iterable[Derived | Sentence]:
     """Gain of each cylinder over its last dry reading at this visit or before."""
     dry_passes = [one for one in done.earlier if not one.conditions.get("wet")]
-    for station, wet in done.comparable().items():
-        dry = next((one.measured[station] for one in reversed(dry_passes) if station in one.comparable()), None)
-        if dry is None or dry.value <= 0:
-            yield say("Wet gain of cylinder {station} is left out: it has no dry reading to compare.", station=station)
+    for station, read in done.measured.items():
+        if read.bound:
             continue
+        before_pass = next((one for one in reversed(dry_passes) if station in one.comparable()), None)
+        if before_pass is None or before_pass.measured[station].value <= 0:
+            yield say(
+                "Wet gain of cylinder {station} is left out: it has no dry reading above zero to compare.",
+                station=station,
+            )
+            continue
+        dry, wet, notes = at_one_barometer(before_pass, done, station)
         before = convert_difference(dry.value, dry.unit, wet.unit)
         per_dry = -100 * wet.value / before**2 * convert_difference(1.0, dry.unit, wet.unit)
-        notes = ()
         if done.engine.layout in ("vee", "flat"):
-            notes = (say("Weak evidence here: on a vee or flat engine the oil lies on one side; "
-                         "no gain is no evidence."),)  # fmt: skip
+            notes.append(say("Weak evidence here: on a vee or flat engine the oil lies on one side; "
+                             "no gain is no evidence."))  # fmt: skip
         yield Derived(
             "compression.wet_gain", station, wet_gain(before, wet.value), "%",
             ((100 / before, wet), (per_dry, dry)),
-            (say("wet gain = ({wet} − {dry}) / {dry}", wet=wet.value, dry=before),), notes,
+            (say("wet gain = ({wet} − {dry}) / {dry}", wet=wet.value, dry=before),),
+            (*notes, *other_visit(before_pass, done)),
         )  # fmt: skip
+
+
+def at_one_barometer(before: Pass, done: Pass, station: str) -> tuple[Measured, Measured, list[Sentence]]:
+    """Dry and wet reading of a cylinder at one barometer; both as taken where either day's is not known."""
+    dry, wet = before.measured[station], done.measured[station]
+    known = [barometer_of(one) is not None for one in (before, done)]
+    if all(known):
+        factor = done.conditions["reference_barometer"] / before.conditions["reference_barometer"]
+        return scaled(dry, factor), wet, []
+    if not any(known):
+        return dry, wet, []
+    note = say("The barometer is known for only one of the two passes: compared as taken.")
+    return *(scaled(one, one.raw_value / one.value) if one.value else one for one in (dry, wet)), [note]
+
+
+def scaled(measured: Measured, factor: float) -> Measured:
+    """A reading `factor` times as large."""
+    return replace(measured, value=measured.value * factor, budget=measured.budget.times(factor))
+
+
+def other_visit(before: Pass, done: Pass) -> tuple[Sentence, ...]:
+    """Say so where the dry reading is of another day."""
+    if None in (before.taken_on, done.taken_on) or before.taken_on == done.taken_on:
+        return ()
+    return (say("The dry reading is of another visit, {day}.", day=before.taken_on.isoformat()),)
 
 
 def expected(done: Pass) -> Derived:
@@ -164,7 +176,8 @@ def expected(done: Pass) -> Derived:
     start = done.conditions.get("reference_barometer") or barometer_of(done)
     ratio = done.engine.trapped_ratio() or done.engine.compression_ratio
     ceiling = end_pressure(start, ratio) - start
-    return Derived("compression.expected", None, ceiling / 1e5, "bar", working=(
+    unit = next((one.unit for one in done.measured.values()), find_unit("bar"))
+    return Derived("compression.expected", None, ceiling / float(unit.scale), unit.symbol, working=(
         say("p · r^1.4 − p with p = {p} hPa, r = {ratio}: isentropic and without leaks, a ceiling a cold cranked engine "
             "stays well under; a reading above it is a slip or oil in the chamber", p=start / 100, ratio=ratio),
     ))  # fmt: skip
@@ -229,7 +242,7 @@ PUBLISHED = (
     CheckValue("two low neighbours of four: the pair between which to look", "(2, 3)",
                lambda: str(adjacent_low_pair({1: 12.1, 2: 8.0, 3: 8.4, 4: 12.0}, IN_LINE)),
                "two adjacent low speak for the gasket between", "common practice",
-               "taking the two lowest whether neighbours or not"),
+               "neighbours taken from the firing order 1-3-4-2, where 2 and 3 are none: None"),
     CheckValue("two low cylinders that are no neighbours: no pair", "None",
                lambda: str(adjacent_low_pair({1: 8.0, 2: 12.0, 3: 8.4, 4: 12.1}, IN_LINE)),
                "the gasket lies between neighbours only", "common practice",

@@ -116,7 +116,10 @@ def recheck(share: float) -> Iterable[Sentence]:
 
 
 def notes(measured: Measured, done: Pass) -> Iterable[Sentence]:
-    """Ask for a re-check near 0 and near 100 %."""
+    """Say where the air came out, and ask for a re-check near 0 and near 100 %."""
+    heard = done.conditions.get("escapes", {}).get(int(measured.station))
+    if heard:
+        yield say("The air came out at: {where}.", where=", ".join(heard))
     share = lost_at(measured, done)
     if share is not None and measured.bound is None:
         yield from recheck(share)
@@ -136,7 +139,7 @@ def refused(conditions: Mapping[str, object], engine: Engine) -> Iterable[tuple[
     """Refuse a supply or an orifice that is none."""
     for name in ("supply_pressure", "orifice_diameter"):
         if name in conditions and not conditions[name] > 0:
-            yield name, say("Read 0 for {name}: it must be above zero.", name=name.replace("_", " "))
+            yield name, say("The {name} must be above zero, as the gauge shows it.", name=name.replace("_", " "))
 
 
 def _thou(behind: float) -> float:
@@ -189,6 +192,7 @@ KIND = Kind(
     derive=derive,
     notes=notes,
     gauge_scale=gauge_scale,
+    reads_through=frozenset({("pressure", "ratio")}),
     refused=refused,
     words={"station": "cylinder", "value": "pressure held or loss", "as_found": "found", "as_left": "after work"},
     published=PUBLISHED,

@@ -51,11 +51,15 @@ def derive(done: Pass) -> Iterable[Derived | Sentence]:
     """Give the change since the last as-left (else the last as-found) of each station found."""
     if done.phase != "as_found":
         return
-    for station, found in done.comparable().items():
-        last = last_at(station, done)
+    for station, found in done.measured.items():
+        last = None if found.bound else last_at(station, done)
         if last is None:
             continue
         before_pass, before = last
+        if differs("state", before_pass, done):
+            yield say("Change of lash at {station} is left out: it was {before} before and is {now} now.", station=station,
+                      before=before_pass.conditions["state"], now=done.conditions["state"])  # fmt: skip
+            continue
         unit = found.unit
         earlier = convert_difference(before.value, before.unit, unit)
         change = lash_change(now=found.value, before=earlier)
@@ -64,6 +68,9 @@ def derive(done: Pass) -> Iterable[Derived | Sentence]:
             extra["rate_per_1000_h"] = rate_per_1000_h(change, done.hours - before_pass.hours)
         else:
             notes.append(say("No rate: the running hours between the two readings are not known or not above zero."))
+        if differs("method", before_pass, done):
+            notes.append(say("Measured by {before} before and by {now} now: a difference between the two is in it.",
+                             before=before_pass.conditions["method"], now=done.conditions["method"]))  # fmt: skip
         yield Derived(
             "valve_lash.change", station, change, unit.symbol,
             sensitivities=((1.0, found), (-scale(before.unit, unit), before)),
@@ -71,6 +78,12 @@ def derive(done: Pass) -> Iterable[Derived | Sentence]:
                          unit=unit.symbol, phase=before_pass.phase.replace("_", " ")),),
             notes=tuple(notes), extra=extra,
         )  # fmt: skip
+
+
+def differs(condition: str, before: Pass, done: Pass) -> bool:
+    """Tell whether two passes state a condition, and not the same."""
+    told = [one.conditions.get(condition) for one in (before, done)]
+    return None not in told and told[0] != told[1]
 
 
 def last_at(station: str, done: Pass) -> tuple[Pass, Measured] | None:

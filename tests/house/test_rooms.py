@@ -32,7 +32,7 @@ PYTHON = [path for path in OURS if path.suffix == ".py"]
 LONGEST = 400  # lines; 60 to 130 is usual, past 300 look for the second thing it does
 KINDS_MAY_USE = {
     "kind", "units", "engine", "air", "thermal",  # what they measure with
-    "sentence", "check_value", "stations", "reference", "geometry",  # words, numbers and places; none of them judges
+    "sentence", "check_value", "stations", "reference", "geometry", "evenness",  # words, numbers and places; none of them judges
 }  # fmt: skip
 MEASURING_STANDS_ON = {"numpy", "scipy", "pint", "measurements"} | sys.stdlib_module_names
 

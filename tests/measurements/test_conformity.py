@@ -104,8 +104,9 @@ def test_a_vanished_zone_proves_nothing_within_and_names_the_uncertainty_it_take
     judgement = judge(0.015, u=0.01, zone=zone)
 
     assert (judgement.vanished, judgement.verdict) == (True, TOO_CLOSE)
-    assert zone_uncertainty(zone) == pytest.approx(2 * 0.015 / 1.6449, rel=1e-4)
-    assert not judge(0.015, u=zone_uncertainty(zone) / 2 * 0.999, zone=zone).vanished
+    assert zone_uncertainty(zone) == pytest.approx(2 * 0.015 / 1.9600, rel=1e-4)  # 95 % between both limits
+    assert judge(0.015, u=zone_uncertainty(zone) / 2 * 0.999, zone=zone).verdict == WITHIN
+    assert judge(0.015, u=zone_uncertainty(zone) / 2 * 1.001, zone=zone).vanished
 
 
 @given(y=st.floats(-3, 3), u=st.floats(0.01, 2), half=st.floats(0.1, 2), dof=st.sampled_from([1, 3, 10, math.inf]))

@@ -6,13 +6,8 @@ from datetime import date
 import pytest
 
 from measurements.entry import Field, read_entry
-from measurements.gauge import (
-    Gauge,
-    evidence_gaps,
-    mean_value,
-    reading_budget,
-    suitability,
-)
+from measurements.evidence import evidence_gaps, suitability
+from measurements.gauge import Gauge, mean_value, reading_budget
 
 MM = Field("length", "mm", "lash")
 FEELER = Gauge("FG-2", "length", resolution=1e-5, expanded_uncertainty=8e-6, coverage_factor=2)

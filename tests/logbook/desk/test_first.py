@@ -71,7 +71,7 @@ def test_a_slip_is_asked_about_before_anything_is_turned(client):
     page = words(client.get(FIRST, {"kind": "valve_lash", "judge": "1", "at-1.intake": "0.012"}))
 
     assert "Is this a slip? It would be 0.3048 mm if typed in inches." in page
-    assert "Confirm the reading first: it would make sense typed in inches." in page
+    assert "Confirm the reading first: it would make sense if typed in inches." in page
 
 
 def test_what_a_stranger_types_comes_back_as_text_not_as_markup(client):
