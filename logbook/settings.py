@@ -7,7 +7,8 @@ from logbook.core.database import database_from, sqlite_at
 from logbook.core.environment import hosts_in, key_kept_in, mode_of, refuse_unfit_production
 
 BASE = Path(__file__).resolve().parent.parent
-HOME = Path(os.environ.get("LOGBOOK_HOME") or BASE / "var").absolute()
+DEMO = os.environ.get("LOGBOOK_DEMO") == "1"  # an invented shop, with everything of its own in a folder of its own
+HOME = Path(os.environ.get("LOGBOOK_HOME") or BASE / "var").absolute() / ("demo" if DEMO else "")
 PRODUCTION = mode_of(os.environ) == "production"
 
 if PRODUCTION:
@@ -37,6 +38,7 @@ INSTALLED_APPS = [
     "template_partials",
     "logbook.core",
     "logbook.people",
+    "logbook.paper",
     "logbook.engines",
     "logbook.gauges",
     "logbook.work",
@@ -53,6 +55,7 @@ MIDDLEWARE = [
     "django.middleware.common.CommonMiddleware",
     "django.middleware.csrf.CsrfViewMiddleware",
     "django.contrib.auth.middleware.AuthenticationMiddleware",
+    "logbook.people.clock.shop_time",
     "django.contrib.messages.middleware.MessageMiddleware",
     "django.middleware.clickjacking.XFrameOptionsMiddleware",
     "django_htmx.middleware.HtmxMiddleware",
@@ -70,6 +73,8 @@ TEMPLATES = [
                 "django.template.context_processors.i18n",
                 "django.contrib.auth.context_processors.auth",
                 "django.contrib.messages.context_processors.messages",
+                "logbook.desk.navigation.navigation",
+                "logbook.desk.demo.door.demo_door",
             ]
         },
     }
@@ -77,6 +82,9 @@ TEMPLATES = [
 
 # People
 AUTH_USER_MODEL = "people.Person"
+AUTHENTICATION_BACKENDS = ["logbook.people.backend.ByName"]
+LOGIN_URL = "people:sign_in"
+LOGIN_REDIRECT_URL = "desk:home"
 PASSWORD_HASHERS = ["logbook.people.hashers.BenchArgon2Hasher"]
 AUTH_PASSWORD_VALIDATORS = [
     {
@@ -109,6 +117,7 @@ SESSION_COOKIE_NAME = "logbook_session"
 CSRF_COOKIE_NAME = "logbook_csrf"
 SESSION_COOKIE_HTTPONLY = CSRF_COOKIE_HTTPONLY = True
 SESSION_COOKIE_SAMESITE = CSRF_COOKIE_SAMESITE = "Lax"
+SESSION_COOKIE_AGE = 16 * 3600  # s: a long shift, and nobody is still signed in on a shared tablet the day after
 X_FRAME_OPTIONS = "DENY"
 CSRF_FAILURE_VIEW = "logbook.core.errors.form_too_old"
 SECURE_REFERRER_POLICY = "same-origin"

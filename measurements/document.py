@@ -4,6 +4,7 @@ import json
 from collections.abc import Iterable, Iterator, Mapping
 from dataclasses import dataclass
 from datetime import date
+from decimal import Decimal
 from math import isfinite
 
 from measurements.entry import Field, read_entry
@@ -212,6 +213,8 @@ class Node:
             return self.value.text
         if isinstance(self.value, str):
             return self.value
+        if isinstance(self.value, float):  # plain data that never was JSON text
+            return format(Decimal(repr(self.value)), "f") if isfinite(self.value) else str(self.value)
         return str(self.value) if isinstance(self.value, int) and not isinstance(self.value, bool) else None
 
     def quantity(self, field: Field, decimal_mark: str | None = None, above: float | None = None):  # noqa: ANN201

@@ -45,6 +45,24 @@ class Measurement(OfShop):
         return f"{self.kind} {self.get_phase_display()}"
 
 
+class ReadingRows(ShopRows):
+    """Readings of one shop, and which of them stand."""
+
+    def standing(self) -> "ReadingRows":
+        """Readings that nothing has taken the place of and that strike nothing out."""
+        return self.filter(is_strike=False, superseded_by__isnull=True)
+
+
+class FindingRows(ShopRows):
+    """Findings of one shop, and which of them stand."""
+
+    def standing(self) -> "FindingRows":
+        """The last finding of every station of a pass, as long as a reading stands there."""
+        beside = {"measurement": models.OuterRef("measurement"), "station": models.OuterRef("station")}
+        later = Finding.objects.filter(**beside, pk__gt=models.OuterRef("pk"))
+        return self.filter(~models.Exists(later), models.Exists(Reading.objects.standing().filter(**beside)))
+
+
 class Reading(OfShop):
     """One answer at one station, as typed; never changed or deleted. A correction is another that supersedes it."""
 
@@ -65,7 +83,7 @@ class Reading(OfShop):
     slip_asked = models.JSONField(_("the slip that was asked about"), null=True, blank=True)
     slip_answer = models.CharField(_("the answer"), max_length=20, blank=True)
 
-    objects = ShopRows.as_manager()
+    objects = ReadingRows.as_manager()
 
     class Meta:
         ordering = ["recorded_at", "pk"]
@@ -97,7 +115,7 @@ class Finding(OfShop):
     judgement = models.JSONField(_("all of it"))
     limit_sheet = models.ForeignKey("engines.LimitSheet", models.PROTECT, null=True, blank=True, related_name="+")
 
-    objects = ShopRows.as_manager()
+    objects = FindingRows.as_manager()
 
     class Meta:
         ordering = ["pk"]

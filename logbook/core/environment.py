@@ -52,6 +52,10 @@ def wrong_for_production(environment: Mapping[str, str]) -> list[str]:
         wrong.append(str(error) if environment.get("DATABASE_URL") else "DATABASE_URL must say where the records lie.")
     if environment.get("LOGBOOK_DEBUG") == "1":
         wrong.append("LOGBOOK_DEBUG=1 shows the program's inside to strangers; take it away.")
+    if environment.get("LOGBOOK_DEMO") == "1":
+        wrong.append(
+            "LOGBOOK_DEMO=1, which manage.py run and demo set, opens an invented shop; start with manage.py serve."
+        )
     return wrong
 
 

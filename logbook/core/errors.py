@@ -24,14 +24,13 @@ def not_understood(request: HttpRequest, exception: Exception) -> HttpResponse:
 
 
 def not_allowed(request: HttpRequest, exception: Exception) -> HttpResponse:
-    """Status 403."""
+    """Status 403: with the sentence of whoever refused, where there is one."""
     return _answer(
         request,
         403,
         heading=_("You may not do that"),
-        what_happened=_(
-            "This page or act belongs to a part that you have no say in, or you are signed in as somebody else."
-        ),
+        what_happened=str(exception)
+        or _("This page or act belongs to a part that you have no say in, or you are signed in as somebody else."),
         what_to_do=_("Nothing was stored. Look who is signed in, at the top of the page; else ask the supervisor."),
     )
 

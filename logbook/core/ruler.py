@@ -38,7 +38,14 @@ class Scale:
         return self.low <= value <= self.high
 
 
-def ruler(lower: float | None, upper: float | None, guard_band: float, marks: Sequence[Mark], label: str) -> SafeString:
+def ruler(
+    lower: float | None,
+    upper: float | None,
+    guard_band: float,
+    marks: Sequence[Mark],
+    label: str,
+    decimal_mark: str = ".",
+) -> SafeString:
     """Draw the ruler as SVG; empty without a limit.
 
     Parameters
@@ -47,6 +54,8 @@ def ruler(lower: float | None, upper: float | None, guard_band: float, marks: Se
         Limits and guard band in one unit with the marks; a missing limit is None.
     label : str
         The same in words, for who can't see it.
+    decimal_mark : str
+        The shop's.
     """
     if lower is None and upper is None:
         return SafeString("")
@@ -54,8 +63,12 @@ def ruler(lower: float | None, upper: float | None, guard_band: float, marks: Se
     parts = [
         format_html('<line class="scribe" x1="0" x2="{}" y1="{}" y2="{}"/>', WIDTH, LINE, LINE),
         accepting(lower, upper, guard_band, scale),
-        *(limit_mark(edge, scale, side) for edge, side in ((lower, "lower"), (upper, "upper")) if edge is not None),
-        *(drawn(mark, lower, scale) for mark in sorted(marks, key=lambda mark: mark.role != "last")),
+        *(
+            limit_mark(edge, scale, side, decimal_mark)
+            for edge, side in ((lower, "lower"), (upper, "upper"))
+            if edge is not None
+        ),
+        *(drawn(mark, lower, scale, decimal_mark) for mark in sorted(marks, key=lambda mark: mark.role != "last")),
     ]
     return format_html(
         '<svg class="ruler" viewBox="0 0 {} {}" role="img" aria-label="{}">{}</svg>',
@@ -84,7 +97,7 @@ def accepting(lower: float | None, upper: float | None, guard_band: float, scale
     return format_html('<rect class="accepts" x="{}" y="{}" width="{}" height="18"/>', left, LINE - 9, width)
 
 
-def limit_mark(edge: float, scale: Scale, side: str) -> SafeString:
+def limit_mark(edge: float, scale: Scale, side: str, decimal_mark: str) -> SafeString:
     """A limit: a scribed line with its forbidden side hatched, and its figure."""
     x = scale.at(edge)
     out = -7 if side == "lower" else 7
@@ -94,12 +107,12 @@ def limit_mark(edge: float, scale: Scale, side: str) -> SafeString:
     )  # fmt: skip
     line = format_html('<line class="limit" x1="{}" x2="{}" y1="{}" y2="{}"/>', x, x, LINE - 18, LINE + 18)
     told = format_html(
-        '<text class="figure" x="{}" y="{}" text-anchor="middle">{}</text>', x, HEIGHT - 6, f"{edge:.6g}"
+        '<text class="figure" x="{}" y="{}" text-anchor="middle">{}</text>', x, HEIGHT - 6, written(edge, decimal_mark)
     )
     return format_html("{}{}{}", hatching, line, told)
 
 
-def drawn(mark: Mark, lower: float | None, scale: Scale) -> SafeString:
+def drawn(mark: Mark, lower: float | None, scale: Scale, decimal_mark: str) -> SafeString:
     """A reading: its whisker and its mark; off the drawing, its value beside the mark at the edge."""
     x = scale.at(mark.value)
     if mark.role == "last":
@@ -113,8 +126,13 @@ def drawn(mark: Mark, lower: float | None, scale: Scale) -> SafeString:
     parts.append(verdict_mark(mark.verdict, x, LINE, points_left=under))
     if not scale.holds(mark.value):
         parts.append(format_html('<text class="figure off" x="{}" y="{}" text-anchor="{}">{}</text>', x + (-22 if under else 22),
-                                 LINE - 13, "start" if under else "end", f"{mark.value:.6g}"))  # fmt: skip
+                                 LINE - 13, "start" if under else "end", written(mark.value, decimal_mark)))  # fmt: skip
     return format_html_join("", "{}", ((part,) for part in parts))
+
+
+def written(value: float, decimal_mark: str) -> str:
+    """A figure on the drawing."""
+    return f"{value:.6g}".replace(".", decimal_mark)
 
 
 def verdict_mark(verdict: str, x: float, y: float, *, points_left: bool = False) -> SafeString:

@@ -2,7 +2,11 @@
 
 from django.urls import path
 
-from . import views
+from . import search_views, views
 
 app_name = "desk"
-urlpatterns = [path("", views.first, name="first")]
+urlpatterns = [
+    path("", views.home, name="home"),
+    path("example/", views.example, name="example"),
+    path("search/", search_views.search, name="search"),
+]

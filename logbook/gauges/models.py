@@ -4,6 +4,7 @@ from django.core.validators import MinValueValidator
 from django.db import models
 from django.utils.translation import gettext_lazy as _
 
+from logbook.core.figures import figure
 from logbook.people.models import OfShop, Person, ShopRows
 
 
@@ -93,3 +94,21 @@ class Calibration(OfShop):
                 violation_error_message=_("Say why the earlier entry was wrong."),
             ),
         ]
+
+    @property
+    def uncertainty(self) -> str:
+        """U with its coverage factor, as the certificate states them; empty when it states none."""
+        if not self.expanded_uncertainty:
+            return ""
+        return f"{self.expanded_uncertainty} (k = {figure(self.coverage_factor, decimal_mark=self.gauge.shop.decimal_mark)})"
+
+    def in_words(self) -> str:
+        """The calibration in a line, for sheets: certificate, day, U, result, next day."""
+        told = [
+            self.certificate,
+            self.calibrated_on.isoformat(),
+            self.uncertainty and f"U = {self.uncertainty}",
+            _("failed") if self.has_failed else "",
+            self.due_on and _("due %(on)s") % {"on": self.due_on.isoformat()},
+        ]
+        return ", ".join(str(part) for part in told if part)

@@ -49,6 +49,10 @@ class Shop(models.Model):
     def __str__(self) -> str:
         return self.name
 
+    def keeps_rows(self) -> bool:
+        """Tell whether anything but the shop's persons is kept yet: an engine, a gauge, a limit."""
+        return any(rows._default_manager.filter(shop=self).exists() for rows in OfShop.__subclasses__())
+
     def as_document(self) -> dict[str, str]:
         """The shop's ways as `assess` reads them."""
         told = {"decimal_mark": self.decimal_mark, "decision_rule": self.decision_rule,
@@ -75,7 +79,15 @@ class ShopRows(models.QuerySet):
         return self.filter(shop_id=person.shop_id)
 
 
-class People(BaseUserManager.from_queryset(ShopRows)):
+class PersonRows(ShopRows):
+    """Persons of a shop."""
+
+    def who_may_decide(self) -> "PersonRows":
+        """Supervisors who may sign in."""
+        return self.filter(is_supervisor=True, is_active=True)
+
+
+class People(BaseUserManager.from_queryset(PersonRows)):
     """Finds persons by the name they sign in with; capitals don't matter."""
 
     def get_by_natural_key(self, name: str) -> "Person":
@@ -99,6 +111,7 @@ class Person(AbstractBaseUser):
     is_active = models.BooleanField(
         _("may sign in"), default=True, help_text=_("Nobody is deleted: a person who left can no longer sign in.")
     )
+    password_is_given = models.BooleanField(_("somebody else chose the password"), default=False)
 
     objects = People()
 
@@ -138,3 +151,25 @@ class Person(AbstractBaseUser):
     def roles(self) -> list[str]:
         """Roles in words."""
         return [role for role in ROLES if self.has_role(role)]
+
+
+class WrongTries(models.Model):
+    """Wrong passwords for one name from one address; kept apart from persons, for the name may be nobody's."""
+
+    name = models.CharField(max_length=80)
+    address = models.CharField(max_length=45)
+    count = models.PositiveSmallIntegerField(default=0)
+    last_at = models.DateTimeField()
+
+    class Meta:
+        constraints = [models.UniqueConstraint(fields=["name", "address"], name="wrong_tries_once_a_name_and_address")]
+
+
+class FirstStart(models.Model):
+    """The opening of this logbook: the table has room for one row, so of two tablets only one can open it."""
+
+    room = models.PositiveSmallIntegerField(primary_key=True, default=1)
+    opened_at = models.DateTimeField()
+
+    class Meta:
+        constraints = [models.CheckConstraint(condition=models.Q(room=1), name="first_start_happens_once")]

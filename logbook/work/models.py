@@ -8,6 +8,7 @@ from logbook.engines.models import Engine, Part
 from logbook.people.models import OfShop, Person, ShopRows
 
 ONE = [MinValueValidator(1)]
+INSIDE = ("technician", "supervisor", "toolroom")  # roles of who works in the shop; a witness comes from outside
 
 
 class Interval(OfShop):
@@ -87,6 +88,19 @@ class Deferral(OfShop):
         ]
 
 
+class WorkOrderRows(ShopRows):
+    """Work orders of one shop."""
+
+    def seen_by(self, person: Person) -> "WorkOrderRows":
+        """Work orders a person may see: their shop's; for who only witnesses, those with stations to be witnessed."""
+        rows = super().seen_by(person)
+        if not person.is_authenticated or person.has_role(*INSIDE):
+            return rows
+        return rows.filter(
+            models.Exists(Task.objects.filter(work_order=models.OuterRef("pk")).exclude(witnessed_stations=[]))
+        )
+
+
 class WorkOrder(OfShop):
     """A job on an engine or on loose parts; its states and their moves are the table in `work.states`."""
 
@@ -110,7 +124,7 @@ class WorkOrder(OfShop):
     finished_at = models.DateTimeField(_("measuring finished"), null=True, blank=True)
     crank_at = models.CharField(_("crank stands at"), max_length=60, blank=True)
 
-    objects = ShopRows.as_manager()
+    objects = WorkOrderRows.as_manager()
 
     class Meta:
         ordering = ["-number"]
@@ -241,6 +255,8 @@ class ClosingItem(OfShop):
     closed_at = models.DateTimeField(null=True, blank=True)
     closed_by = models.ForeignKey(Person, models.PROTECT, null=True, blank=True, related_name="+")
     explanation = models.CharField(_("why it stays open"), max_length=300, blank=True)
+    explained_at = models.DateTimeField(null=True, blank=True)
+    explained_by = models.ForeignKey(Person, models.PROTECT, null=True, blank=True, related_name="+")
 
     objects = ShopRows.as_manager()
 
@@ -254,5 +270,10 @@ class ClosingItem(OfShop):
                 condition=models.Q(closed_at=None, closed_by=None)
                 | models.Q(closed_at__isnull=False, closed_by__isnull=False),
                 name="closing_item_closed_says_by_whom",
+            ),
+            models.CheckConstraint(
+                condition=models.Q(explanation="", explained_at=None, explained_by=None)
+                | (~models.Q(explanation="") & models.Q(explained_at__isnull=False, explained_by__isnull=False)),
+                name="closing_item_explained_says_by_whom",
             ),
         ]

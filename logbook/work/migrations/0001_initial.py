@@ -469,6 +469,17 @@ class Migration(migrations.Migration):
                 ("since_at", models.DateTimeField()),
                 ("closed_at", models.DateTimeField(blank=True, null=True)),
                 ("explanation", models.CharField(blank=True, max_length=300, verbose_name="why it stays open")),
+                ("explained_at", models.DateTimeField(blank=True, null=True)),
+                (
+                    "explained_by",
+                    models.ForeignKey(
+                        blank=True,
+                        null=True,
+                        on_delete=django.db.models.deletion.PROTECT,
+                        related_name="+",
+                        to=settings.AUTH_USER_MODEL,
+                    ),
+                ),
                 (
                     "closed_by",
                     models.ForeignKey(
@@ -590,6 +601,22 @@ class Migration(migrations.Migration):
                     _connector="OR",
                 ),
                 name="closing_item_closed_says_by_whom",
+            ),
+        ),
+        migrations.AddConstraint(
+            model_name="closingitem",
+            constraint=models.CheckConstraint(
+                condition=models.Q(
+                    ("explained_at", None),
+                    ("explained_by", None),
+                    ("explanation", ""),
+                )
+                | models.Q(
+                    models.Q(("explanation", ""), _negated=True),
+                    ("explained_at__isnull", False),
+                    ("explained_by__isnull", False),
+                ),
+                name="closing_item_explained_says_by_whom",
             ),
         ),
     ]

@@ -28,6 +28,12 @@ def refuses(request):
     raise PermissionDenied
 
 
+def refuses_and_says_why(request):
+    from django.core.exceptions import PermissionDenied
+
+    raise PermissionDenied("This page is for: toolroom.")
+
+
 def takes_a_form(request):
     from django.http import HttpResponse
 
@@ -38,6 +44,7 @@ urlpatterns = [
     *ours,
     path("breaks", breaks),
     path("refuses", refuses),
+    path("refuses-and-says-why", refuses_and_says_why),
     path("form", takes_a_form),
 ]
 handler400, handler403, handler404, handler500 = (
@@ -57,7 +64,7 @@ def visitor(settings):
     return Client(raise_request_exception=False, enforce_csrf_checks=True)
 
 
-@pytest.mark.parametrize("address", ["/", "/nothing-here", "/refuses", "/breaks"])
+@pytest.mark.parametrize("address", ["/example/", "/nothing-here", "/refuses", "/breaks"])
 def test_every_answer_carries_the_policy(visitor, address):
     response = visitor.get(address)
     assert response["Content-Security-Policy"] == POLICY
@@ -67,7 +74,7 @@ def test_every_answer_carries_the_policy(visitor, address):
 
 @pytest.mark.django_db
 def test_a_static_file_carries_the_policy_and_may_be_kept(visitor):
-    href = re.search(r'href="(/static/core/page\.[0-9a-f]+\.css)"', visitor.get("/").content.decode())[1]
+    href = re.search(r'href="(/static/core/page\.[0-9a-f]+\.css)"', visitor.get("/example/").content.decode())[1]
     with closing(visitor.get(href)) as response:
         assert response["Content-Security-Policy"] == POLICY
         assert response["Cache-Control"] == "max-age=315360000, public, immutable"
@@ -88,6 +95,12 @@ def test_a_static_file_carries_the_policy_and_may_be_kept(visitor):
             "You may not do that This page or act belongs to a part that you have no say in, or you are signed in "
             "as somebody else. Nothing was stored. Look who is signed in, at the top of the page; else ask the "
             "supervisor.",
+        ),
+        (
+            "/refuses-and-says-why",
+            403,
+            "You may not do that This page is for: toolroom. Nothing was stored. Look who is signed in, at the top of "
+            "the page; else ask the supervisor.",
         ),
         (
             "/breaks",

@@ -21,8 +21,7 @@ def reading():
     [
         "UPDATE engines_meterreading SET shows = 1",
         "DELETE FROM engines_meterreading",
-        "INSERT OR REPLACE INTO engines_meterreading SELECT id, 1, taken_at, recorded_at, reason, meter_id, "
-        "recorded_by_id, shop_id, supersedes_id FROM engines_meterreading",
+        "INSERT OR REPLACE INTO engines_meterreading SELECT * FROM engines_meterreading",
     ],
 )
 def test_the_database_refuses_what_would_change_a_record(reading, statement):

@@ -11,7 +11,8 @@ from pathlib import Path
 import pytest
 from django.core.management import CommandError
 
-from logbook.desk.management.commands.run import open_door
+from logbook.desk.management.commands.serve import open_door
+from logbook.people import start_code
 
 ROOT = Path(__file__).resolve().parents[3]
 
@@ -41,10 +42,10 @@ def test_a_port_that_is_none_gets_a_sentence():
         open_door([70_000])
 
 
-def test_run_prints_an_address_that_answers(tmp_path):
+def test_run_prints_an_address_that_answers_and_the_code_of_an_empty_logbook(tmp_path):
     environment = os.environ | {"LOGBOOK_HOME": str(tmp_path)}
     server = subprocess.Popen(
-        [sys.executable, "manage.py", "run", "--port", "0"],
+        [sys.executable, "manage.py", "serve", "--port", "0"],
         cwd=ROOT,
         env=environment,
         stdout=subprocess.PIPE,
@@ -52,6 +53,9 @@ def test_run_prints_an_address_that_answers(tmp_path):
     )
     try:
         address = re.search(r"http://127\.0\.0\.1:\d+/", server.stdout.readline())[0]
+        told = server.stdout.readline()
+        code = re.fullmatch(rf".* Open it at {address}first-start/ with the code (\S+)\n", told)[1]
+        assert start_code.is_right(tmp_path, code)
         with urllib.request.urlopen(address) as answer:
             page = answer.read().decode()
         stylesheet = re.search(r"/static/core/page\.[0-9a-f]+\.css", page)[0]

@@ -1,52 +1,13 @@
-"""`manage.py run`: the program on this machine, ready to use; `make run` calls it."""
+"""`manage.py run`: the demo on this machine, loaded when it isn't there; `make run` calls it."""
 
-import errno
-import socket
+from django.core.management import call_command
 
-import waitress
-from django.core.management import BaseCommand, CommandError, CommandParser, call_command
-from django.core.wsgi import get_wsgi_application
-
-FIRST_PORT, LAST_PORT = 8000, 8099
-LOOPBACK = "127.0.0.1"
-THREADS = 8
+from .serve import Command as Serve
 
 
-class Command(BaseCommand):
-    help = "Runs the logbook for this machine only, and prints its address. Ctrl-C stops it."
+class Command(Serve):
+    help = "Opens the demo for this machine only, loads it first when it isn't there, and prints its address."
 
-    def add_arguments(self, parser: CommandParser) -> None:
-        parser.add_argument("--port", type=int, help=f"this port; without it the first free one from {FIRST_PORT} on")
-
-    def handle(self, *, port: int | None, **_: object) -> None:
-        call_command("migrate", verbosity=0, interactive=False)
-        call_command("collectstatic", verbosity=0, interactive=False)
-        door = open_door(range(FIRST_PORT, LAST_PORT + 1) if port is None else [port])
-        application = get_wsgi_application()
-        self.stdout.write(f"Engine bench logbook: http://{LOOPBACK}:{door.getsockname()[1]}/   (Ctrl-C stops it)")
-        self.stdout.flush()
-        waitress.serve(application, sockets=[door], threads=THREADS, _quiet=True)
-
-
-def open_door(ports: range | list[int]) -> socket.socket:
-    """Give a socket bound to the first of `ports` that nothing else has taken.
-
-    Raises
-    ------
-    CommandError
-        None is free, or the system allows none.
-    """
-    for port in ports:
-        door = socket.socket(socket.AF_INET, socket.SOCK_STREAM)
-        door.setsockopt(socket.SOL_SOCKET, socket.SO_REUSEADDR, 1)
-        try:
-            door.bind((LOOPBACK, port))
-            door.listen()
-            return door
-        except (OSError, OverflowError) as error:
-            door.close()
-            if getattr(error, "errno", None) != errno.EADDRINUSE:
-                raise CommandError(f"Port {port} can't be opened: {error}. Name another with --port.") from None
-    raise CommandError(
-        f"No free port among {ports[0]} to {ports[-1]}. Stop what runs there, or name another with --port."
-    )
+    def prepare(self) -> None:
+        """Load the demo, unless it is here already; what was done in it is kept."""
+        call_command("demo", stderr=self.stderr)

@@ -1,0 +1,1 @@
+"""The pages of the engines: everybody signed in sees them; who may change what stands with each."""

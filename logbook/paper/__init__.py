@@ -1,0 +1,1 @@
+"""Draws and seals a sheet that it is handed as plain data; knows no engine."""

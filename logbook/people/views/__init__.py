@@ -1,0 +1,1 @@
+"""The room's pages: the door, the people, the shop."""
