@@ -127,12 +127,13 @@ if PRODUCTION:  # behind a proxy that speaks TLS and says so in this header, hav
     SECURE_HSTS_SECONDS = 365 * 24 * 3600
     SESSION_COOKIE_SECURE = CSRF_COOKIE_SECURE = True
 
-# An error's traceback goes to the terminal, never to the page
+# An error's traceback goes to the terminal, never to the page; a refusal that a page answers with is one line there
 LOGGING = {
     "version": 1,
     "disable_existing_loggers": False,
     "formatters": {"plain": {"format": "{asctime} {levelname} {name}: {message}", "style": "{"}},
-    "handlers": {"terminal": {"class": "logging.StreamHandler", "formatter": "plain"}},
+    "filters": {"refusals": {"()": "logbook.core.log.RefusalsInOneLine"}},
+    "handlers": {"terminal": {"class": "logging.StreamHandler", "formatter": "plain", "filters": ["refusals"]}},
     "root": {"handlers": ["terminal"], "level": "WARNING"},
     "loggers": {"django": {"handlers": ["terminal"], "level": "WARNING", "propagate": False}},
 }

@@ -5,12 +5,10 @@ from math import isclose
 from typing import Literal
 
 from measurements import geometry
-from measurements.engine_problems import MOST_CYLINDERS, problems
 from measurements.geometry import CYCLE
 from measurements.sentence import Refusal, Sentence, say
 
-__all__ = ["Engine", "ValveEvents", "problems"]
-
+MOST_CYLINDERS = 40  # twice the largest four-stroke in common use: beyond it, a slip of the finger
 BRISK = 10.0  # mean piston speed [m/s] that industrial engines stay about (common practice)
 
 
@@ -38,7 +36,7 @@ class ValveEvents:
 class Engine:
     """A four-stroke engine as its papers describe it; what is None is not known and not assumed.
 
-    Nothing is checked on making one: `problems` says what is impossible, all at once.
+    Nothing is checked on making one: `engine_problems.problems` says what is impossible, all at once.
 
     Attributes
     ----------

@@ -1,19 +1,13 @@
 """What is impossible about an engine as it was described: everything at once, each with the path of its field."""
 
-from __future__ import annotations
-
 from collections import Counter
 from collections.abc import Iterable, Iterator
 from math import isfinite
-from typing import TYPE_CHECKING
 
+from measurements.engine import MOST_CYLINDERS, Engine
 from measurements.geometry import CYCLE
 from measurements.sentence import Sentence, say
 
-if TYPE_CHECKING:
-    from measurements.engine import Engine
-
-MOST_CYLINDERS = 40  # twice the largest four-stroke in common use: beyond it, a slip of the finger
 MOST_VALVES = 4  # of one side of one cylinder
 
 WORDS = {

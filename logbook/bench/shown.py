@@ -200,7 +200,7 @@ def gauge_words(work: AtWork, finding: Finding | None) -> str:
     """The gauge, and what it leaves open of this reading."""
     pass_ = work.current
     if pass_ is None or pass_.gauge is None:
-        return _("none named")
+        return "–" if work.task.done_at else _("none named")
     told = finding.judgement if finding else {}
     if not told.get("expanded_uncertainty"):
         return str(pass_.gauge)

@@ -56,7 +56,8 @@ class Row:
             )
             finding = self.work.finding(phase, self.station)
             mark = self.work.task.work_order.shop.decimal_mark
-            told[f"{name}_verdict"] = verdict_words(finding.judgement, mark) if finding else ""
+            is_judged = finding is not None and finding.judgement["value"] is not None
+            told[f"{name}_verdict"] = verdict_words(finding.judgement, mark) if is_judged else ""
         return told
 
 
@@ -89,7 +90,7 @@ def kept_rows(request: HttpRequest, task: Task, now: datetime) -> tuple[dict[str
     trouble, kept = {}, 0
     for place in range(int_of(request.POST.get("rows", "0"))):
         station = request.POST.get(f"station-{place}", "")
-        typed = {name: request.POST.get(f"{name}-{place}", "").strip() for name in COLUMNS}
+        typed = {name: request.POST.get(f"{name}-{place}", "").replace("\0", "").strip() for name in COLUMNS}
         if not any(typed.values()):
             continue
         refused, slip, client_id = [], None, None

@@ -6,7 +6,7 @@ from collections.abc import Mapping
 from django.utils.translation import gettext as _
 from django.utils.translation import gettext_lazy, ngettext
 
-from logbook.core.figures import MINUS, figure, uncertainty
+from logbook.core.figures import MINUS, decimals_for, figure, uncertainty
 from logbook.engines.models import LimitLine
 
 _PLACES = re.compile(r"[.,]([0-9]+)")
@@ -77,7 +77,7 @@ def verdict_words(judgement: Mapping[str, object], mark: str = ".") -> str:
     if judgement["verdict"] == "no_limit" or not near:
         return word
     name = min(near, key=lambda one: abs(near[one]))
-    apart = f"{figure(abs(near[name]), decimal_mark=mark)} {judgement['unit']}"
+    apart = f"{figure(margin(near[name], judgement), decimal_mark=mark)} {judgement['unit']}"
     if abs(near[name]) < 1e-12:
         return _("%(verdict)s: on the %(limit)s") % {"verdict": word, "limit": name}
     told = {"verdict": word, "apart": apart, "limit": name}
@@ -86,11 +86,17 @@ def verdict_words(judgement: Mapping[str, object], mark: str = ".") -> str:
     return _("%(verdict)s: %(apart)s over the %(limit)s") % told
 
 
+def margin(apart: float, judgement: Mapping[str, object]) -> float:
+    """How far a value lies from a limit, to the digit its uncertainty bears; what would round to nought stays."""
+    expanded = judgement.get("expanded_uncertainty")
+    return (round(abs(apart), decimals_for(expanded)) if expanded else 0.0) or abs(apart)
+
+
 def limit_words(line: LimitLine) -> str:
-    """Setting zone and limits of a line as they were typed: "Set 0.38 to 0.42 mm · limits 0.35 to 0.45 mm"."""
+    """Setting zone and limits of a line as they were typed: "set 0.38 to 0.42 mm · limits 0.35 to 0.45 mm"."""
     parts = []
     if line.set_lower or line.set_upper:
-        parts.append(_("Set %(span)s") % {"span": span(line.set_lower, line.set_upper)})
+        parts.append(_("set %(span)s") % {"span": span(line.set_lower, line.set_upper)})
     if line.lower or line.upper:
         parts.append(_("limits %(span)s") % {"span": span(line.lower, line.upper)})
     if line.condition:

@@ -15,8 +15,9 @@ def tape(*, length: float, gone: float, window: float, begins: str, ends: str, l
     Parameters
     ----------
     length, gone, window : float
-        How long it runs, how much of that is gone, and the window before its end, in one unit; `gone` over `length`
-        is drawn as an arrowhead past the end, below zero as a slide at the beginning.
+        How long it runs, how much of that is gone, and the window on both sides of its end, in one unit. Over its end
+        but inside its window the slide stands in the window drawn past the end; past the window it is an arrowhead;
+        `gone` below zero is a slide at the beginning.
     begins, ends : str
         Words under its two ends.
     label : str
@@ -29,12 +30,11 @@ def tape(*, length: float, gone: float, window: float, begins: str, ends: str, l
     """
     if not length > 0:
         raise ValueError(f"A tape of length {length} can't be drawn: its length must be above zero.")
-    share = gone / length
     parts = [
         window_on(min(1.0, max(0.0, window / length))),
         format_html('<rect class="tape-edge" x="{}" y="{}" width="{}" height="{}"/>', LEFT, TOP, RIGHT - LEFT, THICK),
         graduations(),
-        past_the_end() if share > 1 else slide(max(0.0, share)),
+        *now_on(gone, length, window),
         format_html('<text class="figure" x="{}" y="{}">{}</text>', LEFT, HEIGHT - 8, begins),
         format_html('<text class="figure" x="{}" y="{}" text-anchor="end">{}</text>', RIGHT, HEIGHT - 8, ends),
     ]
@@ -55,6 +55,19 @@ def window_on(share: float) -> SafeString:
     return format_html(
         '<rect class="tape-window" x="{}" y="{}" width="{}" height="{}"/>', x, TOP, round(RIGHT - x, 1), THICK
     )
+
+
+def now_on(gone: float, length: float, window: float) -> list[SafeString]:
+    """The slide; over the end but inside the window in the rest of the window; past the window the arrowhead."""
+    if gone <= length:
+        return [slide(max(0.0, gone / length))]
+    if gone > length + window:
+        return [past_the_end()]
+    ends = min(at(1 + window / length), WIDTH - 4.0)
+    rest = format_html(
+        '<rect class="tape-window" x="{}" y="{}" width="{}" height="{}"/>', RIGHT, TOP, round(ends - RIGHT, 1), THICK
+    )
+    return [rest, slide(1 + (gone - length) / window * (ends - RIGHT) / (RIGHT - LEFT))]
 
 
 def graduations() -> SafeString:

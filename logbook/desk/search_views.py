@@ -13,6 +13,6 @@ from .search import search as find
 @open_to()
 def search(request: HttpRequest) -> HttpResponse:
     """Engines, parts, jobs and gauges that have every word in them."""
-    text = request.GET.get("q", "").strip()
+    text = request.GET.get("q", "").replace("\0", " ").strip()
     context = {"q": text, "sorts": find(request.user, text)}
     return page_or_fragment(request, "desk/search.html", context, fragment="found")

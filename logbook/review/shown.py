@@ -83,7 +83,9 @@ class Shown:
     def limits(self) -> str:
         """Service limits, and the setting beside them where as left was judged against another zone."""
         found, left = self.case.found, self.case.left
-        told = _("limits %(limits)s") % {"limits": limits_words((found or left).judgement, self.mark)}
+        judged = (found or left).judgement
+        told = _("limit %(limits)s") if None in (judged["lower"], judged["upper"]) else _("limits %(limits)s")
+        told %= {"limits": limits_words(judged, self.mark)}
         if found and left and left.verdict != NO_LIMIT and zone_of(left) != zone_of(found):
             told += ", " + _("set %(limits)s") % {"limits": limits_words(left.judgement, self.mark)}
         return told

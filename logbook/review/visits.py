@@ -68,10 +68,10 @@ def change_words(case: Case, earlier: Sequence[Visit], mark: str) -> str:
         first = _("%(by)s %(unit)s in %(hours)s h (%(rate)s per 1000 h).") % {
             **words, "hours": plain(hours, mark), "rate": rate
         }  # fmt: skip
-    return " ".join(filter(None, [first, before_words(earlier, step, mark)]))
+    return " ".join(filter(None, [first, before_words(earlier, step, unit, mark)]))
 
 
-def before_words(earlier: Sequence[Visit], step: int, mark: str) -> str:
+def before_words(earlier: Sequence[Visit], step: int, unit: str, mark: str) -> str:
     """What the visits before lost or gained, as a span."""
     steps = [
         change(later.found, later.hours, before)
@@ -85,8 +85,8 @@ def before_words(earlier: Sequence[Visit], step: int, mark: str) -> str:
         f"{amount:+.{step}f}".replace("-", "\u2212").replace(".", mark) for amount in (amounts[0], amounts[-1])
     )
     if low == high:
-        return _("The visits before changed it by %(low)s.") % {"low": low}
-    return _("The visits before changed it by %(low)s to %(high)s.") % {"low": low, "high": high}
+        return _("The visits before changed it by %(low)s %(unit)s.") % {"low": low, "unit": unit}
+    return _("The visits before changed it by %(low)s to %(high)s %(unit)s.") % {"low": low, "high": high, "unit": unit}
 
 
 def moved(amount: float, step: int, mark: str) -> str:

@@ -7,7 +7,7 @@ from math import inf
 from django.utils.safestring import SafeString
 from django.utils.translation import gettext as _
 
-from logbook.bench.words import VERDICTS, station_title
+from logbook.bench.words import VERDICTS, margin, station_title
 from logbook.core.figures import figure, uncertainty
 from logbook.core.ruler import Mark, ruler
 from measurements.conformity import BEYOND, NO_LIMIT, TOO_CLOSE, WITHIN
@@ -130,7 +130,7 @@ def margin_words(judgement: Mapping[str, object], mark: str) -> str:
     if value is None or not edges or judgement.get("bound"):
         return ""
     edge, name = min(edges, key=lambda told: abs(told[0] - value))
-    told = {"by": plain(abs(value - edge), mark), "unit": unit}
+    told = {"by": plain(margin(value - edge, judgement), mark), "unit": unit}
     words = {
         ("lower", True): _("%(by)s %(unit)s under the lower limit"),
         ("lower", False): _("%(by)s %(unit)s above the lower limit"),

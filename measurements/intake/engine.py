@@ -3,8 +3,8 @@
 from collections.abc import Sequence
 
 from measurements.document import Node
-from measurements.engine import Engine, ValveEvents, problems
-from measurements.engine_problems import MOST_CYLINDERS
+from measurements.engine import MOST_CYLINDERS, Engine, ValveEvents
+from measurements.engine_problems import problems
 from measurements.entry import Field
 from measurements.intake.shop import Shop
 from measurements.units import convert, find_unit

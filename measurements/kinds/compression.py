@@ -274,7 +274,7 @@ KIND = Kind(
         MethodCondition("all_plugs_out", "All plugs or injectors out", "flag"),
     ),
     cautions=(
-        Caution("DANGER", "Ignition and fuel off, everybody clear: the starter turns the engine."),
+        Caution("DANGER", "Ignition and fuel off, barring tool out, everybody clear: the starter turns the engine."),
         Caution("WARNING", "Never put oil into a compression-ignition cylinder for a wet test: it can fire, "
                            "or lock hydraulically."),
         Caution("WARNING", "Gas and fuel mist leave open plug and injector holes: no flame, no sparks, eyes protected."),

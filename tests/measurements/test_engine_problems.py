@@ -4,7 +4,8 @@ import re
 
 import pytest
 
-from measurements.engine import Engine, ValveEvents, problems
+from measurements.engine import Engine, ValveEvents
+from measurements.engine_problems import problems
 from measurements.published.engine import EIGHT, SIX
 
 GOOD = {"layout": "inline", "cylinders": 4}

@@ -51,6 +51,7 @@ def engine(request: HttpRequest, pk: int) -> HttpResponse:
         "preparing": found.limit_sheets.filter(in_force_at=None, given_up_at=None).first(),
         "other_side": OTHER_SIDE[left], "changes": person.has_role(*SUPERVISORS),
         "reads_meters": person.has_role(*AT_THE_ENGINE), "keeps_limits": person.has_role(*KEEP_LIMITS),
+        "works_here": person.has_role("technician", "supervisor", "toolroom"),  # a witness comes from outside
     }  # fmt: skip
     if told.measured:
         plan = told.crank_plan

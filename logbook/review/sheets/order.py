@@ -20,7 +20,7 @@ def work_order_sheet(work_order: WorkOrder) -> WorkOrderSheet:
     opened = _("%(when)s by %(person)s") % {"when": moment(order.opened_at, order.shop), "person": order.opened_by.name}
     due = ", ".join(interval.title for interval in order.intervals.order_by("title"))
     return {
-        **head(order), "facts": facts([(_("opened"), opened), (_("answers"), due)]),
+        **head(order), "facts": facts([(_("opened"), opened), (_("for what is due"), due)]),
         "cautions": [{"signal": "NOTICE", "text": _(
             "Each takes their own lock and lifts it alone: nobody lifts another person's lock."
         )}],
@@ -33,9 +33,9 @@ def work_order_sheet(work_order: WorkOrder) -> WorkOrderSheet:
 def task_told(task: Task, *, locked: bool) -> Told:
     """A task with the state of the engine it needs; a loose part has nothing to lock."""
     asked, kind = STATES.get(task.lock_state), kinds().get(task.kind)
-    of_state = [*asked.cautions] if asked and locked else []
+    cautions = kind.cautions if kind else asked.cautions if asked and locked else ()  # a kind's say its state's too
     told: Told = {
-        "title": task.title, "cautions": [caution(one) for one in [*of_state, *(kind.cautions if kind else ())]],
+        "title": task.title, "cautions": [caution(one) for one in cautions],
         "facts": facts([
             (_("measures"), kind.title if kind else ""),
             (_("to be witnessed"), ", ".join(station_title(one) for one in task.witnessed_stations)),

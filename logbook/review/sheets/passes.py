@@ -135,14 +135,18 @@ def standing_row(station: str, standing: Sequence[Reading], taken: Taken) -> Row
     else:
         row = judged_row(station_title(station), outcome, taken)
         row["typed"] = "; ".join(one.typed for one in standing)
-    asked = [
-        _("asked about as a slip, answered “%(answer)s”") % {"answer": one.slip_answer}
-        for one in standing
-        if one.slip_asked
-    ]
+    asked = [slip_words(one) for one in standing if one.slip_asked]
     witnesses = taken.witnessed.get(station, ())
     seen = [_("witnessed by %(names)s") % {"names": ", ".join(witnesses)}] if witnesses else []
     return row | {"notes": [*row.get("notes", []), *asked, *seen]}
+
+
+def slip_words(reading: Reading) -> str:
+    """What was asked about as a slip, and what was typed at first where another figure was meant."""
+    told = {"answer": reading.slip_answer, "typed": reading.slip_asked.get("typed", reading.typed)}
+    if told["typed"] == reading.typed:
+        return _("asked about as a slip, answered “%(answer)s”") % told
+    return _("first typed %(typed)s, asked about as a slip, answered “%(answer)s”") % told
 
 
 def struck_row(reading: Reading, taken: Taken) -> Row:

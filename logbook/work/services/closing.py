@@ -10,7 +10,7 @@ from logbook.people.models import Person
 from ..models import ClosingItem, WorkOrder
 from ..roles import needs
 from ..states import State
-from .moves import NotNow, held
+from .moves import NotNow, held, refuse_over
 
 WORKED_ON = (State.AT_THE_BENCH, State.STOPPED_SHORT, State.PLANNED)
 
@@ -35,6 +35,7 @@ def open_item(work_order: WorkOrder, *, by: Person, at: datetime, what: str) -> 
 def close_item(item: ClosingItem, *, by: Person, at: datetime) -> ClosingItem:
     """Close something up; closed twice, the first one stands."""
     needs(by, item, "technician")
+    refuse_over(held(item.work_order))
     current = ClosingItem.objects.select_for_update().get(pk=item.pk)
     if current.closed_at is None:
         current.closed_at, current.closed_by = at, by
@@ -48,6 +49,7 @@ def close_item(item: ClosingItem, *, by: Person, at: datetime) -> ClosingItem:
 def explain_item(item: ClosingItem, *, by: Person, at: datetime, explanation: str) -> ClosingItem:
     """Say why something stays open; the name of who said so and the day stand with it."""
     needs(by, item, "technician")
+    refuse_over(held(item.work_order))
     current = ClosingItem.objects.select_for_update().get(pk=item.pk)
     if current.closed_at is not None:
         raise NotNow(_("“%(what)s” is closed up already: there is nothing to explain.") % {"what": current.what})

@@ -12,7 +12,7 @@ from ..models import HandOver, WorkOrder
 from ..queries import open_now
 from ..roles import needs
 from ..states import State
-from .moves import NotNow, held
+from .moves import NotNow, held, refuse_over
 
 
 class NotForYou(Refused):
@@ -44,6 +44,7 @@ def hand_over(
 def take_over(hand_over: HandOver, *, by: Person, at: datetime) -> HandOver:
     """Take a job over; from then it is known whose hands it is in."""
     needs(by, hand_over, "technician")
+    refuse_over(held(hand_over.work_order))
     current = HandOver.objects.select_for_update().get(pk=hand_over.pk)
     if current.taken_at is not None:
         raise NotNow(_("%(person)s has taken this job over already.") % {"person": current.to_person})

@@ -10,7 +10,7 @@ from logbook.people.models import Person
 
 from ..models import ClosingItem, Lock, Move, WorkOrder
 from ..roles import needs
-from ..states import MOVES, NEEDS_REASON, State
+from ..states import MOVES, NEEDS_REASON, OPEN, State
 
 
 class NotNow(Refused):
@@ -80,6 +80,13 @@ def drop(work_order: WorkOrder, *, by: Person, at: datetime, reason: str) -> Mov
     """Give a job up, with its reason: everything closed up or explained, and no lock left on."""
     refuse_while_open(held(work_order))
     return move(work_order, State.DROPPED, by=by, at=at, reason=reason)
+
+
+def refuse_over(work_order: WorkOrder) -> None:
+    """Refuse to change a job that is signed or was dropped: its sheet stands as it is."""
+    if work_order.state not in OPEN:
+        told = {"job": work_order, "state": work_order.get_state_display()}
+        raise NotNow(_("Job %(job)s is “%(state)s”; nothing on it changes any more.") % told)
 
 
 def refuse_while_open(work_order: WorkOrder) -> None:

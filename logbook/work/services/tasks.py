@@ -13,7 +13,7 @@ from ..queries import engine_locks
 from ..roles import needs
 from ..states import State
 from .lock_guard import refuse_without_locks
-from .moves import NotNow, held, move
+from .moves import NotNow, held, move, refuse_over
 
 AT_WORK = (State.PLANNED, State.AT_THE_BENCH)
 
@@ -72,9 +72,7 @@ def name_witnessed(task: Task, *, by: Person, at: datetime, stations: Sequence[s
     """Name the stations of a task that somebody from outside is to witness."""
     needs(by, task, "supervisor", "technician")
     order = held(task.work_order)
-    if order.state in (State.SIGNED, State.DROPPED):
-        raise NotNow(_("Job %(job)s is “%(state)s”; nothing on it changes any more.")
-                     % {"job": order, "state": order.get_state_display()})  # fmt: skip
+    refuse_over(order)
     task.witnessed_stations = list(dict.fromkeys(station.strip() for station in stations if station.strip()))
     task.save(update_fields=["witnessed_stations"])
     return task
@@ -87,9 +85,7 @@ def use_part(
     """Write down a part used up on a job; a wrong line is answered by another, with a count below zero refused."""
     needs(by, work_order, "technician", "supervisor")
     order = held(work_order)
-    if order.state in (State.SIGNED, State.DROPPED):
-        raise NotNow(_("Job %(job)s is “%(state)s”; nothing on it changes any more.")
-                     % {"job": order, "state": order.get_state_display()})  # fmt: skip
+    refuse_over(order)
     if not count > 0:
         raise NotNow(_("Read a count of %(count)s: write how many were used, more than none.") % {"count": count})
     if task is not None and task.work_order_id != order.pk:

@@ -10,7 +10,7 @@ from logbook.people.access import open_to
 from .. import services
 from ..forms import LockForm, OpenedForm
 from ..models import ClosingItem, HandOver, Lock, Task
-from .pages import back_to_job, done, job_of, row_of
+from .pages import back_to_job, done, is_number, job_of, row_of
 
 
 @require_POST
@@ -43,13 +43,14 @@ def take_lock(request: HttpRequest, number: int) -> HttpResponse:
 @open_to("technician")
 def lift_lock(request: HttpRequest, number: int, pk: int) -> HttpResponse:
     lock = row_of(request, Lock.objects, number, pk)
-    made_way = request.POST.get("for", "")[:120]
+    made_way = request.POST.get("for", "").replace("\0", "")[:120]
     done(
         request,
         lambda: services.lift_lock(lock, by=request.user, at=timezone.now(), lifted_for=made_way),
         _("Your lock is off: %(point)s.") % {"point": lock.point},
     )
-    return back_to_job(int(request.POST["back"]) if request.POST.get("back", "").isdigit() else number, place(request))
+    back = request.POST.get("back", "")
+    return back_to_job(int(back) if is_number(back) else number, place(request))
 
 
 @require_POST
@@ -103,7 +104,7 @@ def finish_measuring(request: HttpRequest, number: int) -> HttpResponse:
 def place(request: HttpRequest) -> str:
     """The place on the page that an act was asked from."""
     task = request.POST.get("task", "")
-    return f"task-{task}" if task.isdigit() else "closing-up"
+    return f"task-{task}" if is_number(task) else "closing-up"
 
 
 def refuse(sentence: str) -> None:

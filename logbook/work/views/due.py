@@ -17,7 +17,7 @@ from ..models import INSIDE, Interval, WorkOrder
 from ..queries import DueJob, due_list, in_stops
 from ..services import NotNow, open_work_order
 from ..words import amount, count_words, every_words, tape_of, window_words
-from .pages import done
+from .pages import done, is_number
 
 
 @dataclass(frozen=True)
@@ -76,7 +76,7 @@ def due(request: HttpRequest) -> HttpResponse:
 @open_to("supervisor")
 def opened_for(request: HttpRequest) -> HttpResponse:
     """Open one work order an engine for the ticked jobs."""
-    ticked = [pk for pk in request.POST.getlist("interval") if pk.isdigit()]
+    ticked = [pk for pk in request.POST.getlist("interval") if is_number(pk)]
     found = Interval.objects.seen_by(request.user).filter(pk__in=ticked, is_stopped=False).select_related("engine")
     orders: list[WorkOrder] = []
     done(request, lambda: orders.extend(open_for(request, list(found))))

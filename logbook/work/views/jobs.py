@@ -21,7 +21,7 @@ from ..queries import engine_locks, with_job_page
 from ..services import open_work_order
 from ..states import MOVES, OPEN, State, drawn_as_picture, every_move
 from ..words import every_words
-from .pages import FormPage, form_page
+from .pages import FormPage, form_page, is_number
 
 A_PAGE = 50
 
@@ -94,7 +94,7 @@ def new_job(request: HttpRequest) -> HttpResponse:
 def chosen_in(request: HttpRequest, name: str, chosen: str, model: type) -> Engine | Part | None:
     """The engine or part that an address names (`for=engine-3`); 404 where the shop has none such."""
     what, _dash, pk = chosen.partition("-")
-    if what != name or not pk.isdigit():
+    if what != name or not is_number(pk):
         return None
     return get_object_or_404(model.objects.seen_by(request.user), pk=pk)
 

@@ -16,6 +16,7 @@ from logbook.core.refusal import Refused
 
 from ..models import WorkOrder
 
+LONGEST_NUMBER = 19  # digits: more don't fit into a row's number
 form_page = require_http_methods(["GET", "HEAD", "POST"])
 
 
@@ -29,6 +30,11 @@ def row_of(request: HttpRequest, rows: QuerySet, number: int, pk: int) -> object
     """A task, lock, item or hand-over of a job in the person's shop; 404 where there is none."""
     found = rows.seen_by(request.user).select_related("work_order__engine", "work_order__part", "shop")
     return get_object_or_404(found, pk=pk, work_order__number=number)
+
+
+def is_number(text: str) -> bool:
+    """Tell whether what came with a form can be a row's number."""
+    return text.isascii() and text.isdigit() and len(text) < LONGEST_NUMBER
 
 
 def back_to_job(number: int, at: str = "") -> HttpResponse:

@@ -31,8 +31,16 @@ def test_the_slide_stands_at_the_share_that_is_gone(gone, place):
     assert slide_at(drawn(gone)) == place
 
 
-def test_over_the_end_an_arrowhead_stands_outside_and_no_slide():
-    picture = drawn(512)
+def test_over_the_end_but_inside_the_window_the_slide_stands_in_the_rest_of_the_window():
+    """A window of 50 in 500 h is 33 of 330 units on both sides of the end: 525 h is 16.5 past it."""
+    picture = drawn(525)
+    assert slide_at(picture) == RIGHT + 16.5
+    assert [float(rest.get("x")) for rest in with_class(picture, "tape-window")] == [RIGHT - 33, RIGHT]
+    assert with_class(picture, "mark beyond") == []
+
+
+def test_past_the_window_an_arrowhead_stands_outside_and_no_slide():
+    picture = drawn(562)
     (arrow,) = with_class(picture, "mark beyond")
     assert min(float(x) for x in re.findall(r"([\d.]+),", arrow.get("points"))) > RIGHT
     assert with_class(picture, "tape-slide") == []

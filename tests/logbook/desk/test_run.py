@@ -65,3 +65,22 @@ def test_run_prints_an_address_that_answers_and_the_code_of_an_empty_logbook(tmp
         server.terminate()
         server.wait()
         server.stdout.close()
+
+
+def test_a_production_start_believes_its_proxy_that_the_browser_speaks_tls(tmp_path):
+    environment = os.environ | {
+        "LOGBOOK_HOME": str(tmp_path), "LOGBOOK_MODE": "production", "LOGBOOK_SECRET_KEY": "none" * 20,
+        "LOGBOOK_HOSTS": "bench.example", "DATABASE_URL": f"sqlite:///{tmp_path}/book.sqlite3",
+    }  # fmt: skip
+    server = subprocess.Popen([sys.executable, "manage.py", "serve", "--port", "0"], cwd=ROOT, env=environment,
+                              stdout=subprocess.PIPE, text=True)  # fmt: skip
+    try:
+        address = re.search(r"http://127\.0\.0\.1:\d+/", server.stdout.readline())[0]
+        told = {"Host": "bench.example", "X-Forwarded-Proto": "https"}
+        with urllib.request.urlopen(urllib.request.Request(f"{address}first-start/", headers=told)) as answer:
+            assert (answer.status, answer.url) == (200, f"{address}first-start/")
+            assert "Secure" in answer.headers["Set-Cookie"]
+    finally:
+        server.terminate()
+        server.wait()
+        server.stdout.close()

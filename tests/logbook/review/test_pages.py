@@ -125,7 +125,7 @@ def test_a_finding_is_shown_with_found_left_change_and_grounds(supervisor, bench
     assert "Exhaust lash, limits 0.35 to 0.45 mm, set 0.38 to 0.42 mm" in told
     assert "Found beyond : 0.02 mm under the lower limit, chance of being within under 0.1 %." in told
     assert "Left within against its setting, 0.01 mm below the upper limit" in told
-    assert "Lost 0.07 mm in 412 h (0.17 per 1000 h). The visits before changed it by −0.01." in told
+    assert "Lost 0.07 mm in 412 h (0.17 per 1000 h). The visits before changed it by −0.01 mm." in told
     assert "2025-12-02 3798 0.3900" in told and "by Supervisor 2. Rule guarded: guard band 0.0081 mm." in told
     assert page.content.decode().count('class="ruler"') == 1 and 'class="ghost"' in page.content.decode()
 

@@ -37,7 +37,10 @@ def test_a_job_is_not_opened_without_a_title(signed_in, engine):
 
 def test_the_cautions_of_a_task_stand_before_its_locks_and_its_start(signed_in, order):
     page = text(signed_in("technician").get(reverse("work:job", args=[order.number])))
-    caution, locks = page.index("Ignition and fuel off, everybody clear"), page.index("Put my lock on: fuel")
+    caution, locks = (
+        page.index("Ignition and fuel off, barring tool out, everybody clear"),
+        page.index("Put my lock on: fuel"),
+    )
     assert caution < locks
     assert "<strong>DANGER</strong>" in page
     assert "Before you work on it, your lock is needed on: fuel, ignition or stop lever." in page
@@ -227,3 +230,21 @@ def test_what_is_not_next_folds_its_cautions_away(signed_in, order, people):
     page = text(signed_in("technician").get(reverse("work:job", args=[order.number])))
     assert "Cautions and locks of: Leak-down" in page
     assert "Cautions and locks of: Compression" not in page
+
+
+def test_an_address_with_a_strange_number_opens_no_job(signed_in, engine):
+    client = signed_in("supervisor")
+    for strange in ("engine-²", "engine-" + "9" * 30, "engine-" + "9" * 5000, "part-٣"):
+        assert client.get(reverse("work:new_job"), {"for": strange}).status_code == 200
+    for strange in ("²", "9" * 30, "9" * 5000):
+        assert "No job is ticked" in said(client.post(reverse("work:due"), {"interval": strange}, follow=True))[0]
+
+
+def test_a_lock_is_lifted_whatever_page_the_form_says_it_stood_on(signed_in, at_the_bench):
+    client = signed_in("technician")
+    for lock, back in zip(Lock.objects.all(), ("²", "9" * 5000), strict=True):
+        page = client.post(
+            reverse("work:lift_lock", args=[at_the_bench.number, lock.pk]), {"back": back, "for": "a\0b"}
+        )
+        assert page.url == reverse("work:job", args=[at_the_bench.number]) + "#closing-up"
+    assert [lock.lifted_for for lock in Lock.objects.all()] == ["ab", "ab"]

@@ -14,6 +14,8 @@ from logbook.people.start_code import make_code
 FIRST_PORT, LAST_PORT = 8000, 8099
 LOOPBACK = "127.0.0.1"
 THREADS = 8
+# In production a proxy on this machine speaks TLS; unheard, its word for that would send every page round in circles.
+BEHIND_TLS = {"trusted_proxy": LOOPBACK, "trusted_proxy_headers": {"x-forwarded-proto"}}
 
 
 class Command(BaseCommand):
@@ -32,7 +34,9 @@ class Command(BaseCommand):
         if not Person.objects.exists():
             self.stdout.write(how_to_open(address))
         self.stdout.flush()
-        waitress.serve(application, sockets=[door], threads=THREADS, _quiet=True)
+        waitress.serve(
+            application, sockets=[door], threads=THREADS, _quiet=True, **(BEHIND_TLS if settings.PRODUCTION else {})
+        )
 
     def prepare(self) -> None:
         """Bring the database up to date before the door opens."""
