@@ -8,14 +8,11 @@ function readBack() {
   if (shown && field()) shown.value = field().value;
 }
 
+/* Always at the end, never at the cursor: browsers differ in where it stands while a key of the pad has the focus,
+   and a cursor left at the front would turn 0.18 into 81.0. */
 function press(key) {
   const into = field();
-  const start = into.selectionStart, end = into.selectionEnd;
-  if (key === "back") {
-    into.setRangeText("", start === end ? Math.max(0, start - 1) : start, end, "end");
-  } else {
-    into.setRangeText(key, start, end, "end");
-  }
+  into.value = key === "back" ? into.value.slice(0, -1) : into.value + key;
   readBack();
 }
 
